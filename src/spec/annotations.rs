@@ -10,6 +10,7 @@ use super::drawing::{
     AnchorRef, AnnotationSpec, Countersink, Enlargement, HoleDepth, HoleNote, LineDirection,
     Measure, Pin, RimSize, Says, Side, Spanned,
 };
+use super::expression::Lookup;
 use super::form::{FORM_KEYS, Sort, member_forms, written};
 use super::reader::{Field, Keys, Reader, Table, excerpt, is_id};
 use crate::ident::{ItemId, ViewId};
@@ -132,6 +133,7 @@ pub(super) fn callout(
             let d = Diagnostic::error(at.key, "a callout has `of` or `at`, not both");
             reader.fail(d.related(of.key, "`of` is here").help(OF_OR_AT))
         }
+        (None, None) if table.is_suspect() => None,
         (None, None) => {
             let d = Diagnostic::error(table.span, "a callout needs `of` or `at`");
             reader.fail(d.help(OF_OR_AT))
@@ -208,6 +210,7 @@ fn says(reader: &mut Reader<'_>, table: &Table<'_>) -> Option<Says> {
     let given = table.among(&MEASURES);
     let measure = match given[..] {
         [one] => one,
+        [] if table.is_suspect() => return None,
         [] => {
             let help = format!("give it one of {}", MEASURES.join(", "));
             let message = "this dimension does not say what it measures";
@@ -388,7 +391,13 @@ fn check_thread(reader: &mut Reader<'_>, table: &Table<'_>, note: &HoleNote) {
 
 fn depth(reader: &mut Reader<'_>, f: Field<'_>) -> Option<HoleDepth> {
     match f.value {
-        DeValue::String(s) if s == "through" => Some(HoleDepth::Through),
+        // A word close to the one choice is that choice misspelt, not a parameter.
+        DeValue::String(s)
+            if reader.parameters.lookup(s) == Lookup::Unknown
+                && nearest(s, ["through"]).is_some() =>
+        {
+            reader.choice(f, &[("through", HoleDepth::Through)])
+        }
         _ => reader.size(f).map(HoleDepth::Blind),
     }
 }

@@ -145,7 +145,8 @@ pub(super) fn member_forms(reader: &mut Reader<'_>, table: &Table<'_>, count: us
     };
     let Some(members) = reader.members(f, count.max(1)) else { return Vec::new() };
     if members.len() != count {
-        let message = format!("there are {} forms for {count} dimensions", members.len());
+        let message =
+            format!("`forms` is a list of {}; there are {count} dimensions", members.len());
         let help = "one for each dimension in order; write {} where there is nothing to say";
         reader.report(Diagnostic::error(f.span, message).help(help));
     }
@@ -291,6 +292,7 @@ fn tolerance_table(reader: &mut Reader<'_>, f: Field<'_>, sort: Sort) -> Option<
         (true, false, false) => plus_minus(reader, &table, sort),
         (false, true, false) => deviations(reader, &table, sort),
         (false, false, true) => limits(reader, &table, sort),
+        (false, false, false) if table.is_suspect() => None,
         (false, false, false) => {
             let d = Diagnostic::error(f.span, "this tolerance says nothing");
             reader.fail(d.help(TOLERANCE_HELP))
@@ -318,6 +320,14 @@ fn plus_minus(reader: &mut Reader<'_>, table: &Table<'_>, sort: Sort) -> Option<
         }
         Some(v)
     };
+    if let (Some(f), None) | (None, Some(f)) = (table.get("plus"), table.get("minus"))
+        && !table.is_suspect()
+    {
+        let (given, other) = if f.name == "plus" { ("up", "minus") } else { ("down", "plus") };
+        let message = format!("this tolerance says only how far {given}");
+        let help = format!("write {other} = 0 if it does not go the other way");
+        return reader.fail(Diagnostic::error(table.span, message).help(help));
+    }
     let plus = reader.need(table, "plus", magnitude);
     let minus = reader.need(table, "minus", magnitude);
     let (upper, minus) = (plus?, minus?);

@@ -6,6 +6,7 @@
 //! invisible direction marks, and characters that the lettering lacks. Markup is not understood
 //! and stays text.
 
+use std::collections::BTreeMap;
 use std::ops::Range;
 
 use super::drawing::{Spanned, Text, TextPiece};
@@ -15,6 +16,9 @@ use crate::text::{Lettering, Symbol};
 
 /// Longest text in bytes: several times what a sheet has room for.
 const LONGEST: usize = 2000;
+
+/// As many faulty characters of one kind are named in a message.
+const MOST_NAMED: usize = 8;
 
 /// Characters from which a text would run right to left: the default ranges of the classes R and
 /// AL of the Unicode Character Database, `DerivedBidiClass.txt` (from memory), which contain the
@@ -36,7 +40,7 @@ const DIRECTION_MARKS: [(char, char); 4] = [
 ];
 
 /// Why a character cannot stand on a sheet.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord)]
 enum Misfit {
     LineEnd,
     Control,
@@ -63,32 +67,43 @@ impl Misfit {
         }
     }
 
-    /// What is wrong with the character, and what to do.
-    fn words(self, c: char) -> (String, &'static str) {
-        let code = format!("U+{:04X}", u32::from(c));
+    /// What is wrong with some characters, and what to do.
+    fn words(self, characters: &[char]) -> (String, &'static str) {
+        let named = characters.iter().take(MOST_NAMED).map(|c| name_of(*c));
+        let mut names = named.collect::<Vec<_>>().join(", ");
+        if characters.len() > MOST_NAMED {
+            names.push_str(", …");
+        }
         match self {
             Self::LineEnd => (
-                format!("a line end ({code}) cannot stand in a text"),
+                format!("a line end ({names}) cannot stand in a text"),
                 "a text is one line; where several are allowed, write a list of texts",
             ),
             Self::Control => (
-                format!("the control character {code} cannot stand in a text"),
+                format!("the control character {names} cannot stand in a text"),
                 "take it out; nothing would be drawn for it",
             ),
             Self::DirectionMark => (
-                format!("the direction mark {code} cannot stand in a text"),
+                format!("the direction mark {names} cannot stand in a text"),
                 "take it out; it is invisible and turns the order of what follows",
             ),
             Self::RightToLeft => (
-                format!("`{c}` ({code}) is written from right to left, which sheets are not"),
+                format!("{names} runs from right to left, which no text on a sheet does"),
                 "write the text in letters that run from left to right",
             ),
             Self::NoGlyph => (
-                format!("the lettering has no `{c}` ({code})"),
+                format!("the lettering has no {names}"),
                 "write it another way, for example in words",
             ),
         }
     }
+}
+
+/// A character for people: itself if it can be seen, and its code.
+fn name_of(c: char) -> String {
+    let code = format!("U+{:04X}", u32::from(c));
+    // What Rust escapes is what cannot be seen by itself.
+    if c.escape_debug().count() == 1 { format!("`{c}` ({code})") } else { code }
 }
 
 impl Reader<'_> {
@@ -127,10 +142,10 @@ impl Reader<'_> {
         }
     }
 
-    /// Reports blank texts, too long ones, and each different character that no sheet can show.
+    /// Reports blank texts, too long ones, and each kind of character that no sheet can show.
     fn check_letters(&mut self, f: Field<'_>, text: &str) {
         if text.trim().is_empty() {
-            let help = "leave the key out if there is nothing to say";
+            let help = "write the text, or leave the key out where it may be absent";
             let message = format!("`{}` is empty", f.name);
             self.report(Diagnostic::error(f.span, message).help(help));
         }
@@ -139,15 +154,18 @@ impl Reader<'_> {
             self.report(Diagnostic::error(f.span, message));
             return;
         }
-        let mut seen: Vec<char> = Vec::new();
+        let mut misfits: BTreeMap<Misfit, (Vec<char>, Range<usize>)> = BTreeMap::new();
         for (at, c) in text.char_indices() {
             let Some(misfit) = Misfit::of(c) else { continue };
-            if seen.contains(&c) {
-                continue;
+            let first = at..at + c.len_utf8();
+            let (characters, _) = misfits.entry(misfit).or_insert((Vec::new(), first));
+            if !characters.contains(&c) {
+                characters.push(c);
             }
-            seen.push(c);
-            let (message, help) = misfit.words(c);
-            let span = self.inside(f, at..at + c.len_utf8());
+        }
+        for (misfit, (characters, first)) in misfits {
+            let (message, help) = misfit.words(&characters);
+            let span = self.inside(f, first);
             self.report(Diagnostic::error(span, message).help(help));
         }
     }

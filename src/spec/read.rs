@@ -97,7 +97,8 @@ fn lower(reader: &mut Reader<'_>, root: Field<'_>) -> Option<Drawing> {
     let version = reader.free_table(root, "the spec")?;
     check_format(reader, &version)?;
     let table = reader.table(root, "the spec", TOP)?;
-    let sheet = reader.need(&table, "drawing", drawing_table);
+    let sheet =
+        required(reader, &table, "drawing", "[drawing]").and_then(|f| drawing_table(reader, f));
     if let Some(sheet) = &sheet {
         reader.units = read_units(reader, sheet);
     }
@@ -108,12 +109,27 @@ fn lower(reader: &mut Reader<'_>, root: Field<'_>) -> Option<Drawing> {
     let revisions = table.get("revision").map(|f| read_revisions(reader, f)).unwrap_or_default();
     let allow = table.get("allow").map(|f| read_allow(reader, f)).unwrap_or_default();
     let parts = read_parts(reader, table.get("part"));
-    let views = reader.need(&table, "view", |r, f| Some(read_views(r, f, &parts)));
-    let (views, mut annotations) = views.unwrap_or_default();
+    let views = required(reader, &table, "view", "[[view]]");
+    let (views, mut annotations) = views.map(|f| read_views(reader, f, &parts)).unwrap_or_default();
     annotations.extend(top_annotations(reader, &table, &views));
     annotations.sort_by_key(|a| a.span);
     check_ids(reader, &annotations, &views);
     Some(Drawing { sheet: sheet?, parts, views, annotations, revisions, allow })
+}
+
+/// A table without which there is nothing to draw.
+fn required<'t>(
+    reader: &mut Reader<'_>,
+    table: &Table<'t>,
+    key: &str,
+    header: &str,
+) -> Option<Field<'t>> {
+    if table.get(key).is_none() && !table.is_suspect() {
+        let message = format!("the spec has no {header}");
+        let help = "`new` writes a spec to begin with";
+        reader.report(Diagnostic::error(table.span, message).help(help));
+    }
+    table.get(key)
 }
 
 /// Gives up on another version of the language, of which every table may mean something else.

@@ -47,6 +47,7 @@ pub(super) struct Table<'t> {
     /// Where it stands.
     pub(super) span: Span,
     entries: &'t DeTable<'t>,
+    known: &'static [&'static str],
 }
 
 impl<'t> Table<'t> {
@@ -62,6 +63,19 @@ impl<'t> Table<'t> {
             self.entries.iter().map(|(k, v)| field(self.span.file, k, v)).collect();
         fields.sort_by_key(|f| f.key);
         fields
+    }
+
+    /// Whether it has keys that it may not have. They have been reported; that something else is
+    /// missing then most likely follows from them.
+    pub(super) fn is_suspect(&self) -> bool {
+        self.entries.keys().any(|k| !self.known.contains(&k.get_ref().as_ref()))
+    }
+
+    /// Whether a key that it may not have was most likely meant to be `key`.
+    fn misspells(&self, key: &str) -> bool {
+        let known = self.known.iter().copied();
+        let stray = |k: &str| !self.known.contains(&k) && nearest(k, known.clone()) == Some(key);
+        self.entries.keys().any(|k| stray(k.get_ref()))
     }
 
     /// Which of these keys it has, in the order in which they were written.
@@ -162,7 +176,7 @@ impl<'a> Reader<'a> {
         keys: Keys,
     ) -> Option<Table<'t>> {
         let DeValue::Table(entries) = f.value else { return self.expected(f, "a table") };
-        let table = Table { what, span: f.span, entries };
+        let table = Table { what, span: f.span, entries, known: keys.known };
         self.check_keys(&table, keys);
         Some(table)
     }
@@ -170,7 +184,7 @@ impl<'a> Reader<'a> {
     /// The table that `f` holds, whatever its keys.
     pub(super) fn free_table<'t>(&mut self, f: Field<'t>, what: &'t str) -> Option<Table<'t>> {
         let DeValue::Table(entries) = f.value else { return self.expected(f, "a table") };
-        Some(Table { what, span: f.span, entries })
+        Some(Table { what, span: f.span, entries, known: &[] })
     }
 
     /// Reports every key that is not one of `keys`.
@@ -194,7 +208,7 @@ impl<'a> Reader<'a> {
         }
     }
 
-    /// What `read` makes of a value that must be there.
+    /// What `read` makes of a value that must be there; a key that was misspelt has been reported.
     pub(super) fn need<'t, T>(
         &mut self,
         table: &Table<'t>,
@@ -203,6 +217,7 @@ impl<'a> Reader<'a> {
     ) -> Option<T> {
         match table.get(key) {
             Some(f) => read(self, f),
+            None if table.misspells(key) => None,
             None => {
                 let message = format!("{} needs `{key}`", table.what);
                 self.fail(Diagnostic::error(table.span, message))

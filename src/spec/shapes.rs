@@ -148,6 +148,9 @@ fn is_open(outline: &Outline) -> bool {
 fn outline(reader: &mut Reader<'_>, table: &Table<'_>) -> Option<Outline> {
     let given = table.among(&OUTLINES);
     let Some(first) = given.first().copied() else {
+        if table.is_suspect() {
+            return None;
+        }
         let message = "this shape has no outline";
         let help = format!("give it one of {}", OUTLINES.join(", "));
         return reader.fail(Diagnostic::error(table.span, message).help(help));
@@ -348,6 +351,7 @@ fn repeat(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Repeat> {
                 |r: &mut Reader<'_>, f: Field<'_>| r.list(f, MOST_MEMBERS as usize, Reader::vector);
             Some(Repeat::At { offsets: reader.need(&table, "at", offsets)? })
         }
+        [] if table.is_suspect() => None,
         [] => {
             let message = "this repeat does not say how";
             let help = "give it one of polar, grid, linear, at, mirror";
@@ -414,7 +418,8 @@ fn grid(reader: &mut Reader<'_>, table: &Table<'_>) -> Option<Repeat> {
         let count = r.pair(f, "how many [columns, rows]", |r, f| r.whole(f, 1..=MOST_MEMBERS))?;
         let members = u64::from(count.0) * u64::from(count.1);
         if !(2..=u64::from(MOST_MEMBERS)).contains(&members) {
-            let message = format!("this grid has {members} members; 2 to {MOST_MEMBERS} can be");
+            let message =
+                format!("`grid` makes {members} of the shape; it can be 2 to {MOST_MEMBERS}");
             return r.fail(Diagnostic::error(f.span, message));
         }
         Some(count)

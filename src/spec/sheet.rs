@@ -232,6 +232,10 @@ fn date(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Spanned<String>> {
     const EXPECTED: &str = "a date such as 2026-04-02";
     let written = match f.value {
         DeValue::Datetime(d) if d.time.is_none() => d.to_string(),
+        DeValue::Datetime(d) if d.date.is_some() => {
+            let d = Diagnostic::error(f.span, format!("`{}` is a date without a time", f.name));
+            return reader.fail(d.help(format!("write {EXPECTED}")));
+        }
         DeValue::String(s) => s.to_string(),
         _ => return reader.expected(f, EXPECTED),
     };

@@ -85,10 +85,11 @@ pub(super) fn read_views(
         let id = r.need(&table, "id", |r, f| Some((r.id(f)?, f.span)));
         ids.extend(id);
         let id = id.map(|(id, span)| Spanned { value: ViewId::new(id), span });
-        // Without an id the annotations are read all the same, for what is wrong with them.
+        // Without an id all the rest is read as well, for what is wrong with it.
         let home = id.clone().unwrap_or(Spanned { value: ViewId::new("view"), span: f.span });
         annotations.extend(annotations_of(r, &table, &home));
-        view(r, &table, id?.value, parts, &mut budget)
+        let view = view(r, &table, home.value, parts, &mut budget);
+        id.and(view)
     });
     unique(reader, "views", ids.into_iter());
     (views, annotations)
@@ -124,6 +125,7 @@ fn view(
     let is_section = reader.maybe(table, "section", section).unwrap_or(false);
     let shapes = match table.get("shapes") {
         Some(f) => shapes(reader, f, budget),
+        None if table.is_suspect() || is_computed(table) => None,
         None => {
             let message = format!("the view `{id}` has no shapes");
             reader.fail(Diagnostic::error(table.span, message).help(DRAWN_ONLY))
@@ -150,6 +152,11 @@ fn own_scale(reader: &mut Reader<'_>, f: Field<'_>) -> Option<crate::units::Scal
         }
         _ => scale(reader, f),
     }
+}
+
+/// Whether the view is a section in the form that is for later, and has been reported as one.
+fn is_computed(table: &Table<'_>) -> bool {
+    table.get("section").is_some_and(|f| matches!(f.value, DeValue::Table(_)))
 }
 
 /// Whether the drawn shapes show a cut; the language's computed sections are for later.
