@@ -82,7 +82,7 @@ fn snippet<'a>(
     let first = marks.iter().map(|(r, _, _)| r.start).min()?;
     let last = marks.iter().map(|(r, _, _)| r.end).max()?;
     let begin = text[..first].rfind('\n').map_or(0, |i| i + 1);
-    let end = text[last..].find('\n').map_or(text.len(), |i| last + i);
+    let end = text[last..].find(['\r', '\n']).map_or(text.len(), |i| last + i);
     let annotations = marks.into_iter().map(|(range, kind, words)| {
         let label = (!words.is_empty()).then(|| normalize_untrusted_str(words));
         kind.span(range.start - begin..range.end - begin).label(label)
@@ -155,6 +155,15 @@ mod tests {
             .label("\u{1b}[2J")
             .help("\u{1b}[2J");
         assert!(!render(&[d], &sources, false).contains('\u{1b}'));
+    }
+
+    #[test]
+    fn line_ends_of_any_system_look_alike() {
+        let (sources, file) = map("a = 1\r\nb = 2\r\n");
+        let d = Diagnostic::error(Span { file, start: 0, end: 1 }, "x")
+            .related(Span { file, start: 7, end: 8 }, "y");
+        let text = render(&[d], &sources, false);
+        assert!(text.contains("1 | a = 1\n") && text.contains("2 | b = 2\n"), "{text}");
     }
 
     #[test]

@@ -865,7 +865,8 @@ mod tests {
         assert_eq!(value(&format!("1{}", "+1".repeat(499))), 500.0);
     }
 
-    /// A random tree as text with all its brackets, and its value by Rust's own arithmetic.
+    /// A random tree as text, bracketed so that it means the same in any language, and its value by
+    /// Rust's own arithmetic.
     fn trees() -> impl Strategy<Value = (String, f64)> {
         let leaf = (0u32..1000).prop_map(|n| {
             let number = f64::from(n) / 8.0;
@@ -886,8 +887,6 @@ mod tests {
     proptest! {
         #[test]
         fn arithmetic_is_that_of_rust((text, expected) in trees()) {
-            // `a * b` binds tighter than a leading sum in `a`; brackets are written everywhere, but
-            // a product stands bare in another one, which is where precedence is put to the test.
             match quantity(&format!("({text})"), LengthUnit::Millimetre) {
                 Ok(q) => prop_assert!(q.value == expected || (q.value - expected).abs() <= 1e-9 * expected.abs(), "{text} = {} not {expected}", q.value),
                 Err(Failure::Wrong(_, Fault::TooLong(_) | Fault::TooDeep | Fault::Overflow)) => {}

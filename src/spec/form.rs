@@ -10,6 +10,7 @@
 use toml::de::DeValue;
 
 use super::drawing::{Form, Show, SizeSign, Standing, Tolerance};
+use super::expression::Quantity;
 use super::reader::{Field, Keys, Reader, Table, excerpt};
 use super::sheet::places;
 use crate::source::{Diagnostic, Span};
@@ -272,12 +273,7 @@ fn tolerance_text(
 }
 
 /// A value of the sort that the tolerance belongs to: mm or degrees.
-fn amount(
-    reader: &mut Reader<'_>,
-    f: Field<'_>,
-    quantity: super::expression::Quantity,
-    sort: Sort,
-) -> Option<f64> {
+fn amount(reader: &mut Reader<'_>, f: Field<'_>, quantity: Quantity, sort: Sort) -> Option<f64> {
     match sort {
         Sort::Angle => reader.as_angle(f, quantity),
         Sort::Length | Sort::Leg | Sort::Hole => reader.as_length(f, quantity),

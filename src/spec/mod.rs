@@ -20,7 +20,11 @@ mod read;
 mod reader;
 mod shapes;
 mod sheet;
+mod starter;
+#[cfg(test)]
+mod tests;
 mod views;
 
 pub use drawing::*;
 pub use read::{FORMAT, read, read_text};
+pub use starter::starter;

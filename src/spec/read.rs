@@ -78,7 +78,8 @@ pub fn read_text(
     let (document, errors) = DeTable::parse_recoverable(text);
     let mut reader = Reader::new(text);
     for e in &errors {
-        let span = e.span().map(|range| place(file, range));
+        // The limit on nesting comes without a place.
+        let span = place(file, e.span().unwrap_or(0..0));
         reader.report(Diagnostic::error(span, format!("this is not TOML: {}", e.message())));
     }
     let document_span = Span { file, start: 0, end: 0 };

@@ -142,6 +142,11 @@ impl<'a> Reader<'a> {
         self.found
     }
 
+    /// Whether further problems would not be kept, so that there is no use in looking for them.
+    fn is_full(&self) -> bool {
+        self.count > MOST_PROBLEMS
+    }
+
     /// Takes note of a problem.
     pub(super) fn report(&mut self, d: Diagnostic) {
         self.count += 1;
@@ -193,16 +198,22 @@ impl<'a> Reader<'a> {
             if keys.known.contains(&f.name) {
                 continue;
             }
+            if self.is_full() {
+                break;
+            }
             if let Some((_, words)) = keys.later.iter().find(|(key, _)| *key == f.name) {
                 let message = format!("`{}` is not read by this version of the program", f.name);
                 self.report(Diagnostic::error(f.key, message).help(*words));
                 continue;
             }
             let all = keys.known.iter().copied().chain(keys.later.iter().map(|(k, _)| *k));
-            let help = nearest(f.name, all).map_or_else(
-                || format!("the keys of {} are {}", table.what, keys.known.join(", ")),
-                |meant| format!("did you mean `{meant}`?"),
-            );
+            let help = match nearest(f.name, all) {
+                None => format!("the keys of {} are {}", table.what, keys.known.join(", ")),
+                Some(meant) => match keys.later.iter().find(|(key, _)| *key == meant) {
+                    Some((_, words)) => format!("`{meant}` is not read yet; {words}"),
+                    None => format!("did you mean `{meant}`?"),
+                },
+            };
             let message = format!("unknown key `{}` in {}", f.name, table.what);
             self.report(Diagnostic::error(f.key, message).help(help));
         }
@@ -243,7 +254,14 @@ impl<'a> Reader<'a> {
         mut read: impl FnMut(&mut Self, Field<'t>) -> Option<T>,
     ) -> Option<Vec<T>> {
         let members = self.members(f, most)?;
-        Some(members.into_iter().filter_map(|m| read(self, m)).collect())
+        let mut values = Vec::new();
+        for member in members {
+            if self.is_full() {
+                break;
+            }
+            values.extend(read(self, member));
+        }
+        Some(values)
     }
 
     /// The same for a list of tables, which an author may have begun as a single one.
@@ -300,10 +318,11 @@ impl<'a> Reader<'a> {
             return Some(*value);
         }
         let message = format!("`{}` cannot be \"{}\"", f.name, excerpt(text));
-        let help = nearest(text, names.iter().copied()).map_or_else(
-            || format!("it is one of {}", quoted(&names)),
-            |meant| format!("did you mean \"{meant}\"? It is one of {}", quoted(&names)),
-        );
+        let help = match nearest(text, names.iter().copied()) {
+            Some(meant) if names.len() == 1 => format!("did you mean \"{meant}\"?"),
+            Some(meant) => format!("did you mean \"{meant}\"? It is one of {}", quoted(&names)),
+            None => format!("it is one of {}", quoted(&names)),
+        };
         self.fail(Diagnostic::error(f.span, message).help(help))
     }
 
