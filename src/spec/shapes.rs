@@ -347,9 +347,7 @@ fn repeat(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Repeat> {
         [one] => repeat_of_kind(reader, &table, one.name),
         [] if table.get("at").is_some() => {
             reject_others(reader, &table, "at", &[]);
-            let offsets =
-                |r: &mut Reader<'_>, f: Field<'_>| r.list(f, MOST_MEMBERS as usize, Reader::vector);
-            Some(Repeat::At { offsets: reader.need(&table, "at", offsets)? })
+            reader.need(&table, "at", displacements)
         }
         [] if table.is_suspect() => None,
         [] => {
@@ -363,6 +361,16 @@ fn repeat(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Repeat> {
             reader.fail(d.related(first.key, "the first is here"))
         }
     }
+}
+
+fn displacements(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Repeat> {
+    let offsets = reader.list(f, MOST_MEMBERS as usize, Reader::vector)?;
+    if matches!(f.value, DeValue::Array(a) if a.is_empty()) {
+        let message = "this repeat lists no displacements";
+        let help = "write them as [[dx, dy], …], or leave the repeat out";
+        return reader.fail(Diagnostic::error(f.span, message).help(help));
+    }
+    Some(Repeat::At { offsets })
 }
 
 fn repeat_of_kind(reader: &mut Reader<'_>, table: &Table<'_>, kind: &str) -> Option<Repeat> {
