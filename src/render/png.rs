@@ -1,0 +1,200 @@
+//! The PNG of a sheet, rasterised from the text of its SVG.
+//!
+//! Takes the SVG that is issued, so that both show the same; gives a PNG on a white ground, grey
+//! unless the sheet has colour, with its resolution written inside. It works in bands of rows:
+//! an A0 sheet at 300 dpi never stands in memory as a whole. Text elements are not drawn (letters
+//! are outlines), nothing is read from disk or network, and images are ignored.
+
+use std::io::{self, Write};
+
+use resvg::{tiny_skia, usvg};
+use tiny_skia::{Color, Pixmap, Transform};
+
+/// Rows per band. A constant, because anti-aliasing differs in a few pixels along the seams: the
+/// same sheet shall give the same bytes on every machine. 512 rows of A0 at 300 dpi are 29 MB.
+const BAND: u32 = 512;
+/// CSS pixels per inch, the unit that usvg measures sheets in.
+const CSS_DPI: f64 = 96.0;
+const MM_PER_INCH: f64 = 25.4;
+/// Longest side of a sheet in mm; the longest elongated sheet of ISO 5457 is 2523 mm.
+const LONGEST_SIDE: f64 = 5000.0;
+/// Resolutions that a raster may have.
+const DPI: std::ops::RangeInclusive<f64> = 10.0..=2400.0;
+/// Most pixels of an image: A0 at 1200 dpi has 2.2 thousand million.
+const MOST_PIXELS: u64 = 4_000_000_000;
+
+/// What was written.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct PngFacts {
+    /// Width in pixels.
+    pub width: u32,
+    /// Height in pixels.
+    pub height: u32,
+    /// What its pixels hold.
+    pub colour: Colour,
+}
+
+/// What the pixels of an image hold.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Colour {
+    /// One byte of grey.
+    Grey,
+    /// Red, green and blue.
+    Rgb,
+}
+
+/// Why there is no raster of a sheet.
+#[derive(Debug, thiserror::Error)]
+pub enum RasterError {
+    /// The text is no SVG.
+    #[error("this is no SVG that can be drawn: {0}")]
+    Svg(String),
+    /// The resolution is out of range.
+    #[error("a resolution of {0} dpi is out of range: give {lo} to {hi} dpi", lo = DPI.start(), hi = DPI.end())]
+    Dpi(f64),
+    /// The sheet is too large.
+    #[error(
+        "a sheet of {width:.0} × {height:.0} mm is too large to be drawn: no side may be longer than {LONGEST_SIDE} mm"
+    )]
+    Sheet {
+        /// Width in mm.
+        width: f64,
+        /// Height in mm.
+        height: f64,
+    },
+    /// The image would have too many pixels, or none.
+    #[error(
+        "an image of {width} × {height} pixels cannot be written: choose another resolution than {dpi} dpi"
+    )]
+    Pixels {
+        /// Width in pixels.
+        width: u64,
+        /// Height in pixels.
+        height: u64,
+        /// The resolution asked for.
+        dpi: f64,
+    },
+    /// The image could not be written.
+    #[error("the image could not be written: {0}")]
+    Write(#[from] io::Error),
+}
+
+/// Rasterises the text of an SVG at `dpi` dots per inch (10 to 2400) into a PNG.
+///
+/// # Errors
+/// [`RasterError`] if the text is no SVG, the sheet or the resolution is beyond the limits, or
+/// `out` refuses the bytes.
+pub fn png(svg: &str, dpi: f64, out: impl Write) -> Result<PngFacts, RasterError> {
+    if !DPI.contains(&dpi) {
+        return Err(RasterError::Dpi(dpi));
+    }
+    let tree = tree(svg)?;
+    let facts = facts(&tree, dpi)?;
+    let mut encoder = ::png::Encoder::new(out, facts.width, facts.height);
+    encoder.set_color(match facts.colour {
+        Colour::Grey => ::png::ColorType::Grayscale,
+        Colour::Rgb => ::png::ColorType::Rgb,
+    });
+    encoder.set_depth(::png::BitDepth::Eight);
+    encoder.set_filter(::png::Filter::NoFilter);
+    encoder.set_deflate_compression(::png::DeflateCompression::Level(LEVEL));
+    encoder.set_pixel_dims(Some(pixel_dims(dpi)));
+    let mut writer = encoder.write_header().map_err(write_error)?;
+    let mut stream = writer.stream_writer_with_size(CHUNK).map_err(write_error)?;
+    draw_bands(&tree, (dpi / CSS_DPI) as f32, &facts, &mut stream)?;
+    stream.finish().map_err(write_error)?;
+    writer.finish().map_err(write_error)?;
+    Ok(facts)
+}
+
+/// Deflate level: with unfiltered line drawings the levels above cost time and save little.
+const LEVEL: u8 = 5;
+/// Bytes per IDAT chunk.
+const CHUNK: usize = 1 << 16;
+
+fn tree(svg: &str) -> Result<usvg::Tree, RasterError> {
+    let options = usvg::Options {
+        image_href_resolver: usvg::ImageHrefResolver {
+            resolve_data: Box::new(|_, _, _| None),
+            resolve_string: Box::new(|_, _| None),
+        },
+        ..usvg::Options::default()
+    };
+    usvg::Tree::from_str(svg, &options).map_err(|e| RasterError::Svg(e.to_string()))
+}
+
+fn facts(tree: &usvg::Tree, dpi: f64) -> Result<PngFacts, RasterError> {
+    let mm = |css: f32| f64::from(css) / CSS_DPI * MM_PER_INCH;
+    let (width, height) = (mm(tree.size().width()), mm(tree.size().height()));
+    if !(width <= LONGEST_SIDE && height <= LONGEST_SIDE) {
+        return Err(RasterError::Sheet { width, height });
+    }
+    let pixels = |mm: f64| (mm / MM_PER_INCH * dpi).round() as u64;
+    let (w, h) = (pixels(width), pixels(height));
+    match (u32::try_from(w), u32::try_from(h)) {
+        (Ok(width), Ok(height)) if w > 0 && h > 0 && w * h <= MOST_PIXELS => {
+            let colour = if has_colour(tree.root()) { Colour::Rgb } else { Colour::Grey };
+            Ok(PngFacts { width, height, colour })
+        }
+        _ => Err(RasterError::Pixels { width: w, height: h, dpi }),
+    }
+}
+
+fn has_colour(group: &usvg::Group) -> bool {
+    let coloured = |paint: &usvg::Paint| match paint {
+        usvg::Paint::Color(c) => c.red != c.green || c.green != c.blue,
+        usvg::Paint::LinearGradient(_)
+        | usvg::Paint::RadialGradient(_)
+        | usvg::Paint::Pattern(_) => true,
+    };
+    group.children().iter().any(|node| match node {
+        usvg::Node::Group(g) => has_colour(g),
+        usvg::Node::Path(p) => {
+            p.fill().is_some_and(|f| coloured(f.paint()))
+                || p.stroke().is_some_and(|s| coloured(s.paint()))
+        }
+        usvg::Node::Image(_) | usvg::Node::Text(_) => false,
+    })
+}
+
+fn pixel_dims(dpi: f64) -> ::png::PixelDimensions {
+    let per_metre = (dpi / MM_PER_INCH * 1000.0).round() as u32;
+    ::png::PixelDimensions { xppu: per_metre, yppu: per_metre, unit: ::png::Unit::Meter }
+}
+
+fn draw_bands(
+    tree: &usvg::Tree,
+    scale: f32,
+    facts: &PngFacts,
+    out: &mut impl Write,
+) -> Result<(), RasterError> {
+    let too_large = || RasterError::Pixels {
+        width: u64::from(facts.width),
+        height: u64::from(facts.height),
+        dpi: f64::from(scale) * CSS_DPI,
+    };
+    let mut band = Pixmap::new(facts.width, BAND.min(facts.height)).ok_or_else(too_large)?;
+    let mut row = Vec::new();
+    for top in (0..facts.height).step_by(BAND as usize) {
+        band.fill(Color::WHITE);
+        let transform = Transform::from_scale(scale, scale).post_translate(0.0, -(top as f32));
+        resvg::render(tree, transform, &mut band.as_mut());
+        let rows = BAND.min(facts.height - top) as usize;
+        for pixels in band.data().chunks_exact(facts.width as usize * 4).take(rows) {
+            row.clear();
+            match facts.colour {
+                Colour::Grey => row.extend(pixels.chunks_exact(4).map(|p| p[0])),
+                Colour::Rgb => row.extend(pixels.chunks_exact(4).flat_map(|p| &p[..3])),
+            }
+            out.write_all(&row)?;
+        }
+    }
+    Ok(())
+}
+
+fn write_error(e: ::png::EncodingError) -> RasterError {
+    match e {
+        ::png::EncodingError::IoError(e) => RasterError::Write(e),
+        other => RasterError::Write(io::Error::other(other)),
+    }
+}
