@@ -16,4 +16,4 @@ mod svg;
 mod text;
 
 pub use png::{Colour, PngFacts, RasterError, png};
-pub use svg::{SHEET_NAMESPACE, TextMode, svg, svg_with};
+pub use svg::{TextMode, svg, svg_with};

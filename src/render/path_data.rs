@@ -26,8 +26,7 @@ pub(super) fn path_data(paths: &[Path<Sheet>]) -> String {
 }
 
 fn push_path(d: &mut String, path: &Path<Sheet>) {
-    let round = path.curves.iter().any(|c| matches!(c, Curve::Arc(_) | Curve::Ellipse(_)));
-    let write = if round { number::fine } else { number::length };
+    let write = precision(path);
     let Some(first) = path.curves.first() else { return };
     let mut pen = Pen { d, write };
     pen.point('M', first.start());
@@ -53,6 +52,19 @@ fn push_path(d: &mut String, path: &Path<Sheet>) {
             pen.point('L', line.from);
         }
         pen.d.push('Z');
+    }
+}
+
+/// A reader derives the centre of an arc from its ends; across a flat ellipse their rounding is
+/// magnified by the ratio of the axes.
+fn precision(path: &Path<Sheet>) -> fn(f64) -> String {
+    let has = |kind: fn(&Curve<Sheet>) -> bool| path.curves.iter().any(kind);
+    if has(|c| matches!(c, Curve::Ellipse(_))) {
+        number::factor
+    } else if has(|c| matches!(c, Curve::Arc(_))) {
+        number::fine
+    } else {
+        number::length
     }
 }
 
@@ -96,7 +108,7 @@ impl Pen<'_> {
     fn arc(&mut self, curve: &Curve<Sheet>, radii: (f64, f64), turn: f64, sweep: f64) {
         let pieces = ((sweep.abs() / LONGEST_PIECE - 1e-9).ceil()).clamp(1.0, 4.0) as u32;
         let flag = if sweep > 0.0 { '0' } else { '1' };
-        let (rx, ry) = (number::fine(radii.0), number::fine(radii.1));
+        let (rx, ry) = ((self.write)(radii.0), (self.write)(radii.1));
         let turn = number::factor(-turn);
         for i in 1..=pieces {
             self.d.push_str(&format!("A{rx} {ry} {turn} 0 {flag} "));

@@ -14,12 +14,10 @@ use super::text::{GlyphDefs, text_group};
 use super::{base64, number, path_data};
 use crate::geom::{Path, Sheet};
 use crate::scene::{
-    Fill, Ink, Item, ItemKind, Mark, Role, Scene, SheetFacts, Stroke, Value, ValueUnit,
+    Fill, Ink, Item, ItemKind, Mark, Role, SHEET_NAMESPACE, Scene, SheetFacts, Stroke, Value,
+    ValueUnit,
 };
 use crate::text::{FAMILY, FONT_WOFF2};
-
-/// Namespace of the element in `<metadata>` that says what the sheet is.
-pub const SHEET_NAMESPACE: &str = "urn:witnessline:sheet";
 
 /// How the letters of a sheet are put into its SVG.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq)]
@@ -306,3 +304,6 @@ fn clean(text: &str) -> String {
         })
         .collect()
 }
+
+#[cfg(test)]
+mod tests;
