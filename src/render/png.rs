@@ -3,7 +3,7 @@
 //! Takes the SVG that is issued, so that both show the same; gives a PNG on a white ground, grey
 //! unless the sheet has colour, with its resolution written inside. It works in bands of rows:
 //! an A0 sheet at 300 dpi never stands in memory as a whole. Text elements are not drawn (letters
-//! are outlines), nothing is read from disk or network, and images are ignored.
+//! are outlines; a sheet whose letters are none is refused), nothing is read from disk or network, and images are ignored.
 
 use std::io::{self, Write};
 use std::sync::mpsc;
@@ -23,6 +23,8 @@ const MM_PER_INCH: f64 = 25.4;
 const LONGEST_SIDE: f64 = 5000.0;
 /// Resolutions that a raster may have.
 const DPI: std::ops::RangeInclusive<f64> = 10.0..=2400.0;
+/// Most XML nodes of an SVG.
+const MOST_NODES: u32 = 2_000_000;
 /// Most pixels of an image: A0 at 1200 dpi has 2.2 thousand million.
 const MOST_PIXELS: u64 = 4_000_000_000;
 
@@ -58,6 +60,9 @@ pub enum RasterError {
     /// The text is no SVG.
     #[error("this is no SVG that can be drawn: {0}")]
     Svg(String),
+    /// Its letters are text in a font, not outlines, and would be missing.
+    #[error("its text is set in a font: rasterise the SVG with letters as outlines")]
+    Font,
     /// The resolution is out of range.
     #[error("a resolution of {0} dpi is out of range: give {lo} to {hi} dpi", lo = DPI.start(), hi = DPI.end())]
     Dpi(f64),
@@ -117,6 +122,15 @@ pub fn png(svg: &str, dpi: f64, out: impl Write) -> Result<PngFacts, RasterError
 }
 
 fn tree(svg: &str) -> Result<usvg::Tree, RasterError> {
+    let parsing = roxmltree::ParsingOptions { nodes_limit: MOST_NODES, ..Default::default() };
+    let doc = roxmltree::Document::parse_with_options(svg, parsing)
+        .map_err(|e| RasterError::Svg(e.to_string()))?;
+    let seen = |n: &roxmltree::Node<'_, '_>| {
+        n.tag_name().name() == "text" && n.attribute("fill-opacity") != Some("0")
+    };
+    if doc.descendants().any(|n| seen(&n)) {
+        return Err(RasterError::Font);
+    }
     let options = usvg::Options {
         image_href_resolver: usvg::ImageHrefResolver {
             resolve_data: Box::new(|_, _, _| None),
@@ -124,7 +138,7 @@ fn tree(svg: &str) -> Result<usvg::Tree, RasterError> {
         },
         ..usvg::Options::default()
     };
-    usvg::Tree::from_str(svg, &options).map_err(|e| RasterError::Svg(e.to_string()))
+    usvg::Tree::from_xmltree(&doc, &options).map_err(|e| RasterError::Svg(e.to_string()))
 }
 
 fn facts(tree: &usvg::Tree, dpi: f64) -> Result<PngFacts, RasterError> {
@@ -234,5 +248,113 @@ fn write_error(e: ::png::EncodingError) -> RasterError {
     match e {
         ::png::EncodingError::IoError(e) => RasterError::Write(e),
         other => RasterError::Write(io::Error::other(other)),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    fn sheet(width: f64, height: f64, body: &str) -> String {
+        format!(
+            "<svg xmlns=\"http://www.w3.org/2000/svg\" width=\"{width}mm\" height=\"{height}mm\" \
+             viewBox=\"0 0 {width} {height}\">{body}</svg>"
+        )
+    }
+
+    fn drawn(svg: &str, dpi: f64) -> (::png::OutputInfo, Vec<u8>, Option<::png::PixelDimensions>) {
+        let mut file = Vec::new();
+        png(svg, dpi, &mut file).expect("a small sheet can be drawn");
+        let mut reader =
+            ::png::Decoder::new(io::Cursor::new(file)).read_info().expect("a PNG was written");
+        let dims = reader.info().pixel_dims;
+        let mut pixels = vec![0; reader.output_buffer_size().expect("its size is known")];
+        let info = reader.next_frame(&mut pixels).expect("it has its pixels");
+        (info, pixels, dims)
+    }
+
+    #[test]
+    fn an_a3_sheet_at_300_dpi_has_the_pixels_of_its_size() {
+        let (info, _, dims) = drawn(&sheet(420.0, 297.0, ""), 300.0);
+        // 420/25.4·300 = 4960.6, 297/25.4·300 = 3507.9; 300/0.0254 = 11811.02 per metre.
+        assert_eq!((info.width, info.height), (4961, 3508));
+        let dims = dims.expect("the resolution is inside");
+        assert_eq!((dims.xppu, dims.yppu, dims.unit), (11811, 11811, ::png::Unit::Meter));
+    }
+
+    #[test]
+    fn ink_covers_the_area_of_its_geometry_across_bands() {
+        // A ring of radius 20 and width 0.5 over a seam: area 2π·20·0.5 = 62.83 mm².
+        let (dpi, per_mm) = (508.0, 20.0);
+        let rows = f64::from(BAND) / per_mm;
+        let body = format!(
+            "<circle cx=\"30\" cy=\"{rows}\" r=\"20\" fill=\"none\" stroke=\"#000\" \
+             stroke-width=\"0.5\"/>"
+        );
+        let (_, pixels, _) = drawn(&sheet(60.0, 60.0, &body), dpi);
+        let ink: f64 = pixels.iter().map(|g| f64::from(255 - g) / 255.0).sum();
+        let area = ink / per_mm / per_mm;
+        let exact = 2.0 * std::f64::consts::PI * 20.0 * 0.5;
+        assert!((area - exact).abs() / exact < 0.01, "{area} mm², {exact} mm² by geometry");
+    }
+
+    #[test]
+    fn items_beside_a_band_are_passed_over_and_no_others() {
+        // One square per millimetre of height, each fully black at 10 pixels per mm.
+        let squares: String =
+            (0..150).map(|y| format!("<g id=\"s{y}\"><path d=\"M0 {y}h1v1h-1z\"/></g>")).collect();
+        let (info, pixels, _) = drawn(&sheet(2.0, 150.0, &squares), 254.0);
+        for row in pixels.chunks_exact(info.line_size) {
+            assert!(row[..10].iter().all(|g| *g == 0) && row[10..].iter().all(|g| *g == 255));
+        }
+    }
+
+    #[test]
+    fn colour_is_kept_where_there_is_some() {
+        let body = "<rect width=\"5\" height=\"5\" fill=\"#d00000\"/>";
+        let (info, pixels, _) = drawn(&sheet(10.0, 10.0, body), 254.0);
+        assert_eq!(info.color_type, ::png::ColorType::Rgb);
+        assert_eq!(pixels[..3], [0xd0, 0, 0]);
+        let (info, ..) = drawn(&sheet(10.0, 10.0, "<rect width=\"5\" height=\"5\"/>"), 254.0);
+        assert_eq!(info.color_type, ::png::ColorType::Grayscale);
+    }
+
+    #[test]
+    fn no_file_is_read_and_no_image_is_drawn() {
+        let image = std::env::current_dir().expect("there is one").join("Cargo.toml");
+        let body = format!("<image href=\"{}\" width=\"9\" height=\"9\"/>", image.display());
+        let (_, pixels, _) = drawn(&sheet(10.0, 10.0, &body), 254.0);
+        assert!(pixels.iter().all(|g| *g == 255));
+    }
+
+    #[test]
+    fn what_cannot_be_drawn_is_refused_with_its_reason() {
+        let refused = |svg: &str, dpi| png(svg, dpi, Vec::new()).expect_err("it is beyond a limit");
+        let small = sheet(10.0, 10.0, "");
+        assert!(matches!(refused("<svg", 300.0), RasterError::Svg(_)));
+        assert!(matches!(refused(&small, 1e9), RasterError::Dpi(_)));
+        assert!(matches!(refused(&small, f64::NAN), RasterError::Dpi(_)));
+        assert!(matches!(refused(&sheet(1e30, 10.0, ""), 300.0), RasterError::Sheet { .. }));
+        assert!(matches!(refused(&sheet(4e3, 4e3, ""), 2400.0), RasterError::Pixels { .. }));
+        assert!(matches!(refused(&sheet(0.01, 9.0, ""), 10.0), RasterError::Pixels { .. }));
+        let lettered = sheet(10.0, 10.0, "<text>42</text>");
+        assert!(matches!(refused(&lettered, 300.0), RasterError::Font));
+    }
+
+    #[test]
+    fn a_full_disk_ends_the_work_with_its_error() {
+        struct Full(usize);
+        impl Write for Full {
+            fn write(&mut self, bytes: &[u8]) -> io::Result<usize> {
+                self.0 = self.0.checked_sub(bytes.len()).ok_or(io::ErrorKind::StorageFull)?;
+                Ok(bytes.len())
+            }
+            fn flush(&mut self) -> io::Result<()> {
+                Ok(())
+            }
+        }
+        let e = png(&sheet(420.0, 297.0, ""), 300.0, Full(2000)).expect_err("the disk is full");
+        assert!(matches!(e, RasterError::Write(_)), "{e}");
+        assert!(e.to_string().contains(&io::ErrorKind::StorageFull.to_string()), "{e}");
     }
 }

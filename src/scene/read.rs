@@ -37,8 +37,10 @@ const MOST_BYTES: usize = 64 << 20;
 const MOST_NODES: u32 = 2_000_000;
 /// Most elements drawn, each use of a shared one counted.
 const MOST_DRAWN: usize = 2_000_000;
-/// Most curves drawn.
-const MOST_CURVES: usize = 8_000_000;
+/// Most bytes of elements drawn, each use of a shared one counted.
+const MOST_BYTES_DRAWN: usize = 1 << 30;
+/// Most curves and letters drawn.
+const MOST_CURVES: usize = 4_000_000;
 /// Deepest nesting of elements and uses.
 const DEEPEST: usize = 64;
 /// Longest side of a sheet, mm.
@@ -149,13 +151,14 @@ struct Reader<'a, 'i> {
     by_id: BTreeMap<&'a str, Node<'a, 'i>>,
     items: Vec<Item>,
     drawn: usize,
+    bytes: usize,
     curves: usize,
 }
 
 impl<'a, 'i> Reader<'a, 'i> {
     fn new(doc: &'a Document<'i>) -> Self {
         let with_id = doc.descendants().filter_map(|n| Some((n.attribute("id")?, n)));
-        Self { by_id: with_id.collect(), items: Vec::new(), drawn: 0, curves: 0 }
+        Self { by_id: with_id.collect(), items: Vec::new(), drawn: 0, bytes: 0, curves: 0 }
     }
 
     /// The items, with what belongs to none as a last one and every id once.
@@ -198,10 +201,9 @@ impl<'a, 'i> Reader<'a, 'i> {
         found: &mut Found,
         depth: usize,
     ) -> Result<(), ReadError> {
-        self.drawn += 1;
-        if self.drawn > MOST_DRAWN {
-            return Err(ReadError::TooMuch { what: "drawn elements", limit: MOST_DRAWN });
-        }
+        self.drawn = counted(self.drawn, 1, MOST_DRAWN, "drawn elements")?;
+        let bytes = node.range().len();
+        self.bytes = counted(self.bytes, bytes, MOST_BYTES_DRAWN, "bytes of drawn elements")?;
         let Some(look) = outer.of(node)? else { return Ok(()) };
         match node.tag_name().name() {
             "g" | "a" | "switch" if node.has_attribute("data-kind") => {
@@ -222,6 +224,8 @@ impl<'a, 'i> Reader<'a, 'i> {
             }
             "text" => {
                 if let Some(placed) = text::text(node, &look)? {
+                    let letters = placed.run.pieces.len();
+                    self.curves = counted(self.curves, letters, MOST_CURVES, "curves")?;
                     match look.fill_ink() {
                         Some(_) => found.marks.push(Mark::Text(placed)),
                         None => found.unseen.push(placed),
@@ -280,15 +284,15 @@ impl<'a, 'i> Reader<'a, 'i> {
         look: &Look,
         marks: &mut Vec<Mark>,
     ) -> Result<(), ReadError> {
-        let (fill, stroke) = (look.fill_ink(), look.stroke_ink());
+        // A straight line has no inside.
+        let fill = look.fill_ink().filter(|_| !node.has_tag_name((SVG, "line")));
+        let stroke = look.stroke_ink();
         if fill.is_none() && stroke.is_none() {
             return Ok(());
         }
         let paths = outline::outline(node, look.transform)?;
-        self.curves += paths.iter().map(|p| p.curves.len()).sum::<usize>();
-        if self.curves > MOST_CURVES {
-            return Err(ReadError::TooMuch { what: "curves", limit: MOST_CURVES });
-        }
+        let curves = paths.iter().map(|p| p.curves.len()).sum();
+        self.curves = counted(self.curves, curves, MOST_CURVES, "curves")?;
         if paths.is_empty() {
             return Ok(());
         }
@@ -301,6 +305,17 @@ impl<'a, 'i> Reader<'a, 'i> {
         }
         Ok(())
     }
+}
+
+/// A count with `more` added, as long as it stays within `limit`.
+fn counted(
+    count: usize,
+    more: usize,
+    limit: usize,
+    what: &'static str,
+) -> Result<usize, ReadError> {
+    let count = count.saturating_add(more);
+    if count <= limit { Ok(count) } else { Err(ReadError::TooMuch { what, limit }) }
 }
 
 /// An item's facts without its marks. A group that lost its id gets one from its kind and place in
@@ -326,3 +341,6 @@ fn item_facts(node: Node<'_, '_>, index: usize) -> Result<Item, ReadError> {
         marks: Vec::new(),
     })
 }
+
+#[cfg(test)]
+mod tests;

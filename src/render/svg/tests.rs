@@ -279,7 +279,25 @@ fn inked(item: &Item) -> Vec<&Mark> {
 }
 
 proptest! {
-    #![proptest_config(ProptestConfig::with_cases(96))]
+    #![proptest_config(ProptestConfig::with_cases(256))]
+
+    /// Bytes struck out, doubled or replaced: whatever is left is read or refused.
+    #[test]
+    fn a_damaged_sheet_is_read_or_refused(
+        items in items(),
+        hits in prop::collection::vec((0.0..1.0, 0_usize..40, "[ -~]{0,8}"), 1..6),
+    ) {
+        let mut text: Vec<char> = svg(&scene(items)).chars().collect();
+        for (share, length, put) in hits {
+            let at = (share * text.len() as f64) as usize;
+            let end = (at + length).min(text.len());
+            text.splice(at..end, put.chars());
+        }
+        let text: String = text.into_iter().collect();
+        if let Ok(back) = read_svg(&text) {
+            prop_assert!(back.items.iter().filter_map(Item::bounds).all(|b| b.width().is_finite()));
+        }
+    }
 
     #[test]
     fn a_scene_comes_back_from_its_svg(items in items()) {

@@ -15,6 +15,9 @@ use crate::geom::{Arc, COINCIDENT, Cubic, Curve, EllipticArc, Path, Point, Sheet
 const GAP: f64 = 2e-3;
 /// How far the centres of two pieces of one arc may be apart, mm.
 const CENTRES: f64 = 4e-3;
+/// Farthest that a curve may lead from the sheet's corner, mm: checks follow curves in steps, and
+/// their number grows with the size.
+pub(super) const FARTHEST: f64 = 1e5;
 /// Shorter chords and smaller radii make no arc.
 const STRAIGHT: f64 = 1e-6;
 
@@ -36,7 +39,9 @@ pub(super) fn outline(
         _ => ("d", shape_data(node)?),
     };
     let paths = Walker::new(transform).walk(&data);
-    paths.ok_or_else(|| attribute_error(node, attribute, &data, "path data of finite numbers"))
+    paths.ok_or_else(|| {
+        attribute_error(node, attribute, &data, "path data within 100 m of the sheet")
+    })
 }
 
 /// Path data of a circle, an ellipse, a line or a rectangle.
@@ -126,7 +131,7 @@ impl Walker {
         }
     }
 
-    /// `None` for data that is no path data or leads beyond finite numbers.
+    /// `None` for data that is no path data or leads too far away.
     fn walk(mut self, data: &str) -> Option<Vec<Path<Sheet>>> {
         if data.trim() == "none" {
             return Some(Vec::new());
@@ -135,8 +140,8 @@ impl Walker {
             self.segment(segment.ok()?);
         }
         self.finish(false);
-        let finite = self.paths.iter().flat_map(|p| &p.curves).all(is_finite);
-        finite.then_some(self.paths)
+        let near = self.paths.iter().flat_map(|p| &p.curves).all(is_near);
+        near.then_some(self.paths)
     }
 
     fn point(&self, abs: bool, x: f64, y: f64) -> kurbo::Point {
@@ -246,9 +251,14 @@ impl Walker {
     }
 }
 
-fn is_finite(curve: &Curve<Sheet>) -> bool {
-    let b = curve.bounds();
-    [b.min.x, b.min.y, b.max.x, b.max.y].into_iter().all(f64::is_finite)
+fn is_near(curve: &Curve<Sheet>) -> bool {
+    let points = match curve {
+        Curve::Cubic(c) => c.0.to_vec(),
+        Curve::Line(_) | Curve::Arc(_) | Curve::Ellipse(_) => {
+            [0.0, 0.25, 0.5, 0.75, 1.0].map(|t| curve.at(t)).to_vec()
+        }
+    };
+    points.iter().all(|p| p.x.abs() <= FARTHEST && p.y.abs() <= FARTHEST)
 }
 
 /// An arc of the element's coordinates as a curve of the sheet.

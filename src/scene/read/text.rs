@@ -7,13 +7,17 @@ use roxmltree::Node;
 
 use super::error::ReadError;
 use super::look::Look;
-use super::node::{number_of, numbers_of};
+use super::node::{attribute_error, number_of, numbers_of};
+use super::outline::FARTHEST;
 use crate::geom::{Curve, Paper, Path, Point, Quad, Rect, Sheet, Vector};
 use crate::scene::{Ink, Mark, PlacedText};
 use crate::text::{Lettering, Run};
 
 /// How far measured and drawn ink may differ before the drawn one is believed, mm.
 const AGREED: f64 = 0.1;
+
+/// Tallest letters that are read, mm.
+const TALLEST: f64 = 1000.0;
 
 /// What is found inside a group.
 #[derive(Debug, Default)]
@@ -39,8 +43,12 @@ pub(super) fn text(node: Node<'_, '_>, look: &Look) -> Result<Option<PlacedText>
     let up = turn[2].hypot(turn[3]);
     // Letter heights are written to a fraction of a micrometre; this restores the height meant.
     let height = (look.font_size * up / Lettering::bundled().font_size(1.0) * 1e4).round() / 1e4;
-    let run = Run::new(&content, height);
     let origin = Point::from_kurbo(look.transform * kurbo::Point::new(x, y));
+    if !(height <= TALLEST && origin.x.abs() <= FARTHEST && origin.y.abs() <= FARTHEST) {
+        let value = height.to_string();
+        return Err(attribute_error(node, "font-size", &value, "a text on or near the sheet"));
+    }
+    let run = Run::new(&content, height);
     let shift = match node.attribute("text-anchor") {
         Some("middle") => run.advance / 2.0,
         Some("end") => run.advance,
