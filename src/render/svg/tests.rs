@@ -278,6 +278,22 @@ fn inked(item: &Item) -> Vec<&Mark> {
     item.marks.iter().filter(|m| !matches!(m, Mark::Text(t) if t.run.is_blank())).collect()
 }
 
+#[test]
+fn a_flat_ellipse_comes_back_in_one_piece() {
+    let flat = EllipticArc {
+        centre: p(90.0, 90.0),
+        radii: (0.3, 68.227_921),
+        turn: 0.0,
+        start: 0.0,
+        sweep: 293.326_849,
+    };
+    let path = Path::of(Curve::Ellipse(flat));
+    let stroke = Mark::Stroke(Stroke::new(vec![path.clone()], 0.5, None));
+    let back = read_svg(&svg(&scene(vec![note(vec![stroke])]))).expect("it was issued");
+    let Mark::Stroke(s) = &back.items[0].marks[0] else { panic!("a stroke was issued") };
+    assert!(same_paths(&s.paths, &[path]), "{s:?}");
+}
+
 proptest! {
     #![proptest_config(ProptestConfig::with_cases(256))]
 
