@@ -68,7 +68,7 @@ fn style_of(drawing: &Drawing, diagnostics: &mut Diagnostics) -> Option<Style> {
     let found = style::builtin(&asked.value);
     if found.is_none() {
         let names = style::builtin_names();
-        let help = match crate::source::nearest(&asked.value, names) {
+        let help = match crate::source::nearest(&asked.value, names.iter().copied()) {
             Some(near) => format!("did you mean `{near}`?"),
             None => format!("the styles are {}", names.join(", ")),
         };

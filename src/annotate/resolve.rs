@@ -104,7 +104,7 @@ impl Binder<'_> {
             return found.ok_or_else(|| {
                 let ids: Vec<_> = self.views.iter().map(|v| v.id.as_str()).collect();
                 let message = format!("there is no view `{}`", named.value);
-                let help = match crate::source::nearest(named.value.as_str(), &ids) {
+                let help = match crate::source::nearest(named.value.as_str(), ids.iter().copied()) {
                     Some(near) => format!("did you mean `{near}`?"),
                     None => format!("the views are {}", ids.join(", ")),
                 };

@@ -25,7 +25,7 @@ pub(super) fn run(options: &Options) -> Outcome {
         }
         None => {
             let names = style::builtin_names();
-            let near = crate::source::nearest(name, names).unwrap_or(names[0]);
+            let near = crate::source::nearest(name, names.iter().copied()).unwrap_or(names[0]);
             print::err(&format!("error: there is no style `{name}`; did you mean `{near}`?\n"));
             Outcome::Wrong
         }

@@ -88,7 +88,7 @@ impl LayoutError {
         match self {
             Self::UnknownFormat { name, known } => {
                 let names: Vec<&str> = known.iter().map(String::as_str).collect();
-                let help = match crate::source::nearest(name, &names) {
+                let help = match crate::source::nearest(name, names.iter().copied()) {
                     Some(near) => format!("did you mean `{near}`? The style has {}", names.join(", ")),
                     None => format!("the style has {}; or say \"auto\"", names.join(", ")),
                 };

@@ -177,7 +177,7 @@ impl View {
 
     fn unknown_shape(&self, id: &str) -> AnchorError {
         let ids: Vec<&str> = self.names.keys().map(ShapeId::as_str).collect();
-        let help = match nearest(id, &ids) {
+        let help = match nearest(id, ids.iter().copied()) {
             Some(near) => format!("did you mean `{near}`?"),
             None if ids.len() <= 12 => format!("its shapes are {}", ids.join(", ")),
             None => format!("it has {} shapes; give this one its id", ids.len()),
@@ -208,7 +208,7 @@ impl Asked<'_> {
             all.extend(["pitch", "pitch_diameter"].map(str::to_owned));
         }
         let words: Vec<&str> = all.iter().map(String::as_str).collect();
-        let help = match nearest(self.place, &words) {
+        let help = match nearest(self.place, words.iter().copied()) {
             Some(near) => format!("did you mean `{}.{near}`?", self.id),
             None => format!("`{}` has {}", self.id, words.join(", ")),
         };
