@@ -2,6 +2,7 @@
 
 pub mod geom;
 pub mod ident;
+pub mod review;
 pub mod scene;
 pub mod source;
 pub mod spec;

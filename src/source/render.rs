@@ -133,7 +133,8 @@ mod tests {
             .related(span(16, 17), "because of this")
             .help("leave it out");
         let text = render(&[d], &sources, false);
-        for part in ["error: `b` is wrong", "plate.toml:2:1", "^ here", "- because", "help: leave"] {
+        for part in ["error: `b` is wrong", "plate.toml:2:1", "^ here", "- because", "help: leave"]
+        {
             assert!(text.contains(part), "{part} is not in\n{text}");
         }
         assert!(!text.contains('\u{1b}'));

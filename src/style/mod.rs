@@ -9,11 +9,13 @@ mod builtin;
 mod cost;
 mod format;
 mod number;
+mod review;
 mod sections;
 
 pub use builtin::{builtin, builtin_names, builtin_text};
 pub use cost::{Costs, GroupCosts, PairCosts, UnaryCosts};
 pub use format::{Cell, CellText, FormatSpec, FrameSpec, TableSpec, TitleBlockSpec, ZoneSpec};
+pub use review::ReviewSpec;
 pub use sections::{
     ArrowSpec, CentreSpec, ClearanceSpec, DashSet, DashSpec, DimensionSpec, Group, HatchSpec,
     LeaderSpec, NumberSpec, Projection, SheetLook, Style, ToleranceLook, ViewSpacing, WordSpec,
