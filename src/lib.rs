@@ -48,4 +48,4 @@ pub mod view;
 
 mod pipeline;
 
-pub use pipeline::{Drawn, draw};
+pub use pipeline::{Drawn, check, draw};

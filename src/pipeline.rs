@@ -2,11 +2,12 @@
 
 use crate::annotate::{Practice, resolve};
 use crate::layout::{Layout, lay_out};
+use crate::review::{Conflict, Misfit, Review, ReviewInput, review};
 use crate::scene::Scene;
 use crate::source::{Diagnostic, Diagnostics};
 use crate::spec::{Drawing, FormatChoice};
 use crate::style::{self, Style};
-use crate::view::{View, drawn_view};
+use crate::view::{Extent, SizeConflict, View, contradictions, drawn_view};
 
 /// A drawing with its sheets.
 #[derive(Clone, Debug)]
@@ -60,6 +61,54 @@ pub fn draw(drawing: Drawing, diagnostics: &mut Diagnostics) -> Option<Drawn> {
             diagnostics.push(e.diagnostic(&drawing));
             None
         }
+    }
+}
+
+/// What a checker would mark on the sheets of a drawing.
+#[must_use]
+pub fn check(drawn: &Drawn) -> Review {
+    let misfits: Vec<Misfit> = drawn.layout.misfits.iter().map(misfit).collect();
+    let conflicts: Vec<Conflict> = contradictions(&drawn.views)
+        .iter()
+        .map(|c| conflict(c, &drawn.views, &drawn.style))
+        .collect();
+    review(&ReviewInput {
+        scenes: &drawn.scenes,
+        style: &drawn.style,
+        drawing: Some(&drawn.drawing),
+        misfits: &misfits,
+        conflicts: &conflicts,
+    })
+}
+
+fn misfit(m: &crate::sheet::Misfit) -> Misfit {
+    Misfit {
+        sheet: 1,
+        item: m.item.clone(),
+        area: m.place,
+        excess: m.excess(),
+        message: m.to_string(),
+        span: m.span,
+    }
+}
+
+fn conflict(c: &SizeConflict, views: &[View], style: &Style) -> Conflict {
+    let (a, b) = (&views[c.views.0], &views[c.views.1]);
+    let extent = match c.extent {
+        Extent::Width => "width",
+        Extent::Height => "height",
+        Extent::Depth => "depth",
+    };
+    let mm = |v: f64| style.number.length(v, None);
+    let (first, second) = (mm(c.lengths.0), mm(c.lengths.1));
+    Conflict {
+        views: vec![a.id.clone(), b.id.clone()],
+        message: format!(
+            "the part's {extent} is {first} in view `{}` and {second} in view `{}`",
+            a.id, b.id
+        ),
+        difference: (c.lengths.0 - c.lengths.1).abs(),
+        spans: vec![a.span, b.span],
     }
 }
 

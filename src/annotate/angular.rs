@@ -34,8 +34,7 @@ pub(super) fn candidates(
     };
     for step in steps {
         let radius = least + f64::from(step) * group.pitch;
-        let fits = radius * sweep.to_radians()
-            >= label.advance() + 2.0 * ground.practice.arrow();
+        let fits = radius * sweep.to_radians() >= label.advance() + 2.0 * ground.practice.arrow();
         for outside in [false, true] {
             if outside == fits {
                 continue;
@@ -69,10 +68,9 @@ fn draw(
     let mut sketch = Sketch::default();
     let arrow_turn = (p.arrow() / arc.radius).to_degrees();
     let tail = if outside { 2.0 * arrow_turn } else { 0.0 };
-    for (degrees, (near, far), sense) in [
-        (arc.start, ends[0], 1.0),
-        (arc.start + arc.sweep, ends[1], -1.0),
-    ] {
+    for (degrees, (near, far), sense) in
+        [(arc.start, ends[0], 1.0), (arc.start + arc.sweep, ends[1], -1.0)]
+    {
         extend(&mut sketch, arc, degrees, near, far, p.style.dimension.overshoot);
         // A chord's direction half an arrow in: the head lies on the arc, not on its tangent.
         let inward = if outside { -sense } else { sense };

@@ -74,11 +74,7 @@ pub(super) fn radius_candidates(
 
 /// Directions from the centre that meet the arc: the style's angles, else places along it that are
 /// neither level nor upright.
-fn radius_directions(
-    arc: &geom::Arc<ViewSpace>,
-    pin: &Pin,
-    ground: &Ground<'_>,
-) -> Vec<f64> {
+fn radius_directions(arc: &geom::Arc<ViewSpace>, pin: &Pin, ground: &Ground<'_>) -> Vec<f64> {
     let mut found: Vec<f64> =
         directions(pin, ground).into_iter().filter(|d| arc.covers(*d)).collect();
     if found.is_empty() {

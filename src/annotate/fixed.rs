@@ -120,7 +120,12 @@ impl Fixed {
         cost
     }
 
-    fn trace_cost(&self, trace: &Trace<Paper>, sketch: &Sketch<Paper>, practice: &Practice<'_>) -> f64 {
+    fn trace_cost(
+        &self,
+        trace: &Trace<Paper>,
+        sketch: &Sketch<Paper>,
+        practice: &Practice<'_>,
+    ) -> f64 {
         let costs = &practice.style.cost.unary;
         let points = trace.curve.flattened(FLATNESS);
         let bounds = trace.curve.bounds();

@@ -125,7 +125,9 @@ impl<S: Space> PlacedLabel<S> {
     /// The boxes of its runs' ink and its frames, turned with it.
     pub fn quads(&self) -> impl Iterator<Item = Quad<S>> + '_ {
         let boxes = self.label.runs.iter().map(|(at, run)| run.ink.shifted(*at));
-        boxes.chain(self.label.frames.iter().copied()).map(|r| Quad(r.corners().map(|p| self.at(p))))
+        boxes
+            .chain(self.label.frames.iter().copied())
+            .map(|r| Quad(r.corners().map(|p| self.at(p))))
     }
 
     /// One box around all its ink, turned with it.
@@ -136,9 +138,6 @@ impl<S: Space> PlacedLabel<S> {
 
     /// The outlines of its frames.
     pub fn frame_paths(&self) -> impl Iterator<Item = Path<S>> + '_ {
-        self.label
-            .frames
-            .iter()
-            .map(|r| Path::polyline(&r.corners().map(|p| self.at(p)), true))
+        self.label.frames.iter().map(|r| Path::polyline(&r.corners().map(|p| self.at(p)), true))
     }
 }

@@ -79,7 +79,8 @@ pub(super) fn leader_cost(degrees: f64, length: f64, ground: &Ground<'_>) -> f64
     } else {
         0.0
     };
-    let down = if (180.0..360.0).contains(&degrees.rem_euclid(360.0)) { costs.leader_down } else { 0.0 };
+    let down =
+        if (180.0..360.0).contains(&degrees.rem_euclid(360.0)) { costs.leader_down } else { 0.0 };
     angle + down + costs.leader_per_mm * (length - costs.leader_free).max(0.0)
 }
 

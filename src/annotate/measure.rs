@@ -75,11 +75,7 @@ pub(super) fn direction(
 }
 
 /// The distance of two holds along a direction, ready to be drawn; its label is put on later.
-pub(super) fn linear(
-    a: Hold,
-    b: Hold,
-    asked: LineDirection,
-) -> Result<LinearSize, MeasureError> {
+pub(super) fn linear(a: Hold, b: Hold, asked: LineDirection) -> Result<LinearSize, MeasureError> {
     let along = direction(&a, &b, asked)?;
     let size = LinearSize { from: a, to: b, along, label: Default::default() };
     if size.length() < SAME_PLACE { Err(MeasureError::Coincident) } else { Ok(size) }

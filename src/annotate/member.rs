@@ -150,7 +150,13 @@ impl Member {
     }
 
     /// Draws the extension lines up to a dimension line at `level` across.
-    pub(super) fn extensions(&self, sketch: &mut Sketch<Paper>, axes: &Axes, level: f64, p: &Practice<'_>) {
+    pub(super) fn extensions(
+        &self,
+        sketch: &mut Sketch<Paper>,
+        axes: &Axes,
+        level: f64,
+        p: &Practice<'_>,
+    ) {
         for station in [&self.first, &self.second] {
             extension(sketch, axes, station, level, p);
         }

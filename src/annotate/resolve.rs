@@ -13,8 +13,7 @@ use crate::ident::ShapeId;
 use crate::scene::{ItemKind, Value, ValueUnit};
 use crate::source::{Diagnostic, Diagnostics, Span};
 use crate::spec::{
-    AnchorRef, AnnotationSpec, Drawing, Form, HoleNote, LineDirection, Measure, RimSize, Says,
-    Text,
+    AnchorRef, AnnotationSpec, Drawing, Form, HoleNote, LineDirection, Measure, RimSize, Says, Text,
 };
 use crate::view::{Anchor, AnchorError, Measured, Size, View};
 
@@ -113,8 +112,7 @@ impl Binder<'_> {
         }
         let Some(anchor) = first_anchor(&spec.says) else { return Ok(0) };
         let holds = |v: &View| v.anchor(&anchor.name).is_ok() || v.size(&anchor.name).is_ok();
-        let found: Vec<usize> =
-            (0..self.views.len()).filter(|i| holds(&self.views[*i])).collect();
+        let found: Vec<usize> = (0..self.views.len()).filter(|i| holds(&self.views[*i])).collect();
         match found.as_slice() {
             [one] => Ok(*one),
             [] => {
@@ -180,8 +178,7 @@ impl Binder<'_> {
         match *first {
             Size::Diameter(circle) => {
                 let circles = rounds(&found);
-                let (label, value, text) =
-                    self.write(circle.radius * 2.0, mm, count, "⌀", form);
+                let (label, value, text) = self.write(circle.radius * 2.0, mm, count, "⌀", form);
                 let content = Content::Diameter { circles, label: Arc::new(label) };
                 Ok(said(content, Some(value), text, shapes))
             }
@@ -337,8 +334,7 @@ impl Binder<'_> {
         sign: &str,
         form: &Form,
     ) -> (Label, Value, String) {
-        let written =
-            Written { value, unit, count, sign, form, places: self.drawing.sheet.places };
+        let written = Written { value, unit, count, sign, form, places: self.drawing.sheet.places };
         (written.label(&self.practice), written.data(), written.line(&self.practice))
     }
 
@@ -360,8 +356,7 @@ impl Binder<'_> {
         match found.members.as_slice() {
             [(id, a)] => Ok((id.clone(), *a)),
             several => {
-                let message =
-                    format!("`{}` names {} places, not one", anchor.name, several.len());
+                let message = format!("`{}` names {} places, not one", anchor.name, several.len());
                 let help = several.first().map_or_else(String::new, |(id, _)| {
                     let place = anchor.name.rsplit_once('.').map_or("", |(_, place)| place);
                     format!("pick a member, such as `{id}.{place}`")

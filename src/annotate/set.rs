@@ -47,7 +47,8 @@ pub(super) fn baseline(sizes: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> 
         for start in tiers(pin, ground) {
             for centred in [true, false] {
                 let mut sketch = Sketch::default();
-                let mut cost = side_cost(side, ground) + tier_cost(start, ground) * f64::from(count);
+                let mut cost =
+                    side_cost(side, ground) + tier_cost(start, ground) * f64::from(count);
                 for (tier, member) in (start..).zip(&members) {
                     let level = level(base, sign, tier, ground);
                     let (spot, spot_cost) = baseline_spot(member, centred, pin, ground);

@@ -249,7 +249,10 @@ mod tests {
             ..Form::default()
         };
         assert_eq!(written(30.0, "⌀", form.clone()), "⌀30 H7 (+0,021/0)");
-        assert_eq!(written(30.0, "⌀", Form { show: Show::Limits, ..form }), "⌀30 H7 (30,021/30,000)");
+        assert_eq!(
+            written(30.0, "⌀", Form { show: Show::Limits, ..form }),
+            "⌀30 H7 (30,021/30,000)"
+        );
     }
 
     #[test]

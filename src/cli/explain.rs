@@ -15,7 +15,12 @@ pub(super) fn run(options: &Options) -> Outcome {
     match &options.rule {
         None => {
             for rule in review::rules() {
-                print::out(&format!("{:<40} {:<9} {}\n", rule.name, rule.severity.name(), rule.summary));
+                print::out(&format!(
+                    "{:<40} {:<9} {}\n",
+                    rule.name,
+                    rule.severity.name(),
+                    rule.summary
+                ));
             }
             Outcome::Done
         }

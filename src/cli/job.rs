@@ -53,11 +53,11 @@ impl Job {
 
 fn help(e: &WorldError) -> &'static str {
     match e {
-        WorldError::Missing(_) => {
-            "check the path; `witnessline new FILE` writes a starter spec"
-        }
+        WorldError::Missing(_) => "check the path; `witnessline new FILE` writes a starter spec",
         WorldError::NotText(_) => "save the spec as UTF-8 text",
-        WorldError::TooLarge { .. } => "a spec is text; split the drawing if it is really this large",
+        WorldError::TooLarge { .. } => {
+            "a spec is text; split the drawing if it is really this large"
+        }
         WorldError::Refused { .. } => "check that it is a file and that you may read it",
     }
 }

@@ -69,19 +69,20 @@ fn marks(sketch: &Sketch<Sheet>, gaps: &Gaps, practice: &Practice<'_>) -> Vec<Ma
 fn without_repeats(paths: Vec<Path<Sheet>>) -> Vec<Path<Sheet>> {
     let mut kept: Vec<Path<Sheet>> = Vec::new();
     for path in paths {
-        let covers = |a: &Path<Sheet>, b: &Path<Sheet>| match (a.curves.as_slice(), b.curves.as_slice()) {
-            ([Curve::Line(a)], [Curve::Line(b)]) => {
-                let (da, db) = (a.vector(), b.vector());
-                let off = |p| da.cross(p).abs() <= crate::geom::COINCIDENT * da.length();
-                off(db)
-                    && off(b.from - a.from)
-                    && [b.from, b.to].iter().all(|p| {
-                        let t = (*p - a.from).dot(da) / da.dot(da);
-                        (-1e-9..=1.0 + 1e-9).contains(&t)
-                    })
-            }
-            _ => a == b,
-        };
+        let covers =
+            |a: &Path<Sheet>, b: &Path<Sheet>| match (a.curves.as_slice(), b.curves.as_slice()) {
+                ([Curve::Line(a)], [Curve::Line(b)]) => {
+                    let (da, db) = (a.vector(), b.vector());
+                    let off = |p| da.cross(p).abs() <= crate::geom::COINCIDENT * da.length();
+                    off(db)
+                        && off(b.from - a.from)
+                        && [b.from, b.to].iter().all(|p| {
+                            let t = (*p - a.from).dot(da) / da.dot(da);
+                            (-1e-9..=1.0 + 1e-9).contains(&t)
+                        })
+                }
+                _ => a == b,
+            };
         if kept.iter().any(|k| covers(k, &path)) {
             continue;
         }

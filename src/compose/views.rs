@@ -105,9 +105,10 @@ fn joined(curves: impl Iterator<Item = Curve<Sheet>>) -> Vec<Path<Sheet>> {
         match paths.last_mut() {
             Some(path)
                 if !curve.is_loop()
-                    && path.curves.last().is_some_and(|l| {
-                        !l.is_loop() && l.end().is_at(curve.start())
-                    }) =>
+                    && path
+                        .curves
+                        .last()
+                        .is_some_and(|l| !l.is_loop() && l.end().is_at(curve.start())) =>
             {
                 path.curves.push(curve);
             }

@@ -139,8 +139,7 @@ fn tracks(
         for (cell, i) in cells.iter().filter(|(c, _)| track(c) == number) {
             let own = along.reference(*cell, cells, rooms, track);
             let (ink, outline) = (along.span(&rooms[*i].ink), along.span(&rooms[*i].outline));
-            let before =
-                cells.iter().filter(|(c, _)| line(c) == line(cell) && track(c) < number);
+            let before = cells.iter().filter(|(c, _)| line(c) == line(cell) && track(c) < number);
             for (other, j) in before {
                 let reference = along.reference(*other, cells, rooms, track);
                 let at = places.get(&track(other)).copied().unwrap_or(0.0) - reference;
@@ -168,11 +167,8 @@ fn settle(
     let inner = field.frame.grown(-spacing.frame_gap);
     let blocks: Vec<Rect<Sheet>> =
         field.blocks.iter().map(|b| b.grown(spacing.block_gap)).collect();
-    let inks: Vec<Rect<Sheet>> = rooms
-        .iter()
-        .zip(local)
-        .filter_map(|(r, p)| p.map(|p| Shift::to(p).rect(&r.ink)))
-        .collect();
+    let inks: Vec<Rect<Sheet>> =
+        rooms.iter().zip(local).filter_map(|(r, p)| p.map(|p| Shift::to(p).rect(&r.ink))).collect();
     let short = |all: Rect<Sheet>| Shortage {
         needed: (all.width(), all.height()),
         available: (inner.width(), inner.height()),
@@ -191,7 +187,8 @@ fn settle(
         let at_origin = Shift::to(Point::new(0.0, 0.0)).rect(&room.ink);
         let mut obstacles = blocks.clone();
         obstacles.extend(taken.iter().map(|t| t.grown(spacing.ink_gap)));
-        let free = best_shift(&[at_origin], at_origin, inner, &obstacles).ok_or(short(at_origin))?;
+        let free =
+            best_shift(&[at_origin], at_origin, inner, &obstacles).ok_or(short(at_origin))?;
         taken.push(at_origin.shifted(free));
         shifts.push(Shift::to(Point::new(free.x, free.y)));
     }
@@ -215,8 +212,7 @@ fn best_shift(
     let mut best: Option<(f64, Vector<Sheet>)> = None;
     for j in 0..steps(room_y) {
         for i in 0..steps(room_x) {
-            let corner =
-                Point::new(inner.min.x + i as f64 * STEP, inner.min.y + j as f64 * STEP);
+            let corner = Point::new(inner.min.x + i as f64 * STEP, inner.min.y + j as f64 * STEP);
             let shift = corner - all.min;
             let middle = all.shifted(shift).centre();
             let distance = middle.distance(ideal);

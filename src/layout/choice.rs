@@ -76,7 +76,8 @@ impl<'a, S: Space> Problem<'a, S> {
         let freedom = |c: &Chooser<S>| {
             let least = c.choices.iter().map(|o| o.cost).min().unwrap_or(0);
             let cheap = c.choices.iter().filter(|o| o.cost <= least + 500).count();
-            let span = c.choices.first().and_then(|o| o.seat).map_or(f64::INFINITY, |s| s.high - s.low);
+            let span =
+                c.choices.first().and_then(|o| o.seat).map_or(f64::INFINITY, |s| s.high - s.low);
             (span, cheap)
         };
         let mut order: Vec<usize> = (0..self.choosers.len()).collect();
@@ -167,8 +168,7 @@ impl<'a, S: Space> Problem<'a, S> {
     /// What the picks cost in all, 1/100, and which annotations keep a conflict with which.
     pub(super) fn verdict(&mut self, picks: &[usize]) -> (i64, BTreeMap<usize, Vec<usize>>) {
         let hard = super::ink::whole(self.practice.style.cost.hard);
-        let mut total: i64 =
-            picks.iter().zip(self.choosers).map(|(p, c)| c.choices[*p].cost).sum();
+        let mut total: i64 = picks.iter().zip(self.choosers).map(|(p, c)| c.choices[*p].cost).sum();
         let mut conflicts: BTreeMap<usize, Vec<usize>> = BTreeMap::new();
         for index in 0..self.pairs.len() {
             let (i, j) = self.pairs[index];

@@ -96,9 +96,7 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
     let both_dims = p.kind == InkKind::Dim && q.kind == InkKind::Dim;
     let both_leaders = p.kind == InkKind::Leader && q.kind == InkKind::Leader;
     let near = p.bounds.distance(&q.bounds) <= ON_ONE_ANOTHER;
-    if near
-        && let (Some(u), Some(v)) = (trimmed(&p.line, trim), trimmed(&q.line, trim))
-    {
+    if near && let (Some(u), Some(v)) = (trimmed(&p.line, trim), trimmed(&q.line, trim)) {
         match line_crossing(&u, &v, ON_ONE_ANOTHER) {
             Crossing::At { .. } => return weight(p.kind, q.kind, pair),
             Crossing::Along { length } if length > SHARED_STRETCH => {

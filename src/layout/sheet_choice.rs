@@ -89,7 +89,9 @@ impl LayoutError {
             Self::UnknownFormat { name, known } => {
                 let names: Vec<&str> = known.iter().map(String::as_str).collect();
                 let help = match crate::source::nearest(name, names.iter().copied()) {
-                    Some(near) => format!("did you mean `{near}`? The style has {}", names.join(", ")),
+                    Some(near) => {
+                        format!("did you mean `{near}`? The style has {}", names.join(", "))
+                    }
                     None => format!("the style has {}; or say \"auto\"", names.join(", ")),
                 };
                 Diagnostic::error(format_span, self.to_string()).help(help)
@@ -220,11 +222,7 @@ impl<'a> Desk<'a> {
         let rooms: Vec<Room> = alone
             .iter()
             .zip(stands)
-            .map(|(a, stand)| Room {
-                stand,
-                outline: a.paper.outline,
-                ink: self.room(a),
-            })
+            .map(|(a, stand)| Room { stand, outline: a.paper.outline, ink: self.room(a) })
             .collect();
         let field = Field {
             frame: furniture.frame,
@@ -274,11 +272,7 @@ impl<'a> Desk<'a> {
                 view: index,
                 choices: offer
                     .iter()
-                    .map(|c| Choice {
-                        cost: whole(c.cost),
-                        ink: Ink::of(&c.sketch),
-                        seat: c.seat,
-                    })
+                    .map(|c| Choice { cost: whole(c.cost), ink: Ink::of(&c.sketch), seat: c.seat })
                     .collect(),
             })
             .collect();
@@ -304,7 +298,8 @@ impl<'a> Desk<'a> {
     /// Box around a view with its annotations as placed alone, and its label above them.
     fn room(&self, alone: &Alone) -> Rect<Paper> {
         let centres = alone.paper.centres.iter().flat_map(|c| c.lines.iter().map(Curve::bounds));
-        let picked = alone.offers.iter().zip(&alone.picks).filter_map(|(o, p)| o[*p].sketch.bounds());
+        let picked =
+            alone.offers.iter().zip(&alone.picks).filter_map(|(o, p)| o[*p].sketch.bounds());
         let ink = Rect::union_of(centres.chain(picked).chain([alone.paper.outline]))
             .unwrap_or(alone.paper.outline);
         match &alone.label {
@@ -369,7 +364,9 @@ impl<'a> Desk<'a> {
                 let placed = Placed {
                     annotation: self.annotations[*member].clone(),
                     sketch: sketches[i][picks[i]].clone(),
-                    conflicts: conflicts.get(&i).map_or_else(Vec::new, |c| c.iter().map(id).collect()),
+                    conflicts: conflicts
+                        .get(&i)
+                        .map_or_else(Vec::new, |c| c.iter().map(id).collect()),
                 };
                 (*member, placed)
             })

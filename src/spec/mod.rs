@@ -27,4 +27,5 @@ mod views;
 
 pub use drawing::*;
 pub use read::{FORMAT, read, read_text};
+pub use sheet::check_number;
 pub use starter::starter;

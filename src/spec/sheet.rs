@@ -200,6 +200,22 @@ fn number(reader: &mut Reader<'_>, f: Field<'_>) -> Option<Spanned<String>> {
     Some(Spanned { value: value.to_owned(), span: f.span })
 }
 
+/// Whether `number` can be a drawing number: issued files are named after it.
+///
+/// # Errors
+/// Says why it cannot name a file.
+pub fn check_number(number: &str) -> Result<(), String> {
+    let fit = |c: char| !c.is_control() && c != '"' && c != '\\';
+    match unfit_for_file_name(number) {
+        Some(why) => Err(format!("the number \"{}\" cannot name a file: {why}", excerpt(number))),
+        None if number.is_empty() => Err("the number is empty".to_owned()),
+        None if !number.chars().all(fit) => {
+            Err("the number has characters in it that no file name has".to_owned())
+        }
+        None => Ok(()),
+    }
+}
+
 /// Why a text cannot name a file on some system; the empty text is reported elsewhere.
 fn unfit_for_file_name(name: &str) -> Option<String> {
     const FORBIDDEN: [char; 9] = ['/', '\\', ':', '*', '?', '"', '<', '>', '|'];

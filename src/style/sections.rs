@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, RevisionTableSpec, TitleBlockSpec};
+use super::{Costs, FormatSpec, FrameSpec, ReviewSpec, RevisionTableSpec, TitleBlockSpec};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -50,6 +50,8 @@ pub struct Style {
     pub notes: SheetLook,
     /// Fixed words.
     pub words: WordSpec,
+    /// Limits that only checking needs.
+    pub review: ReviewSpec,
     /// What a placement costs.
     pub cost: Costs,
 }

@@ -44,11 +44,7 @@ pub fn contradictions(views: &[View]) -> Vec<SizeConflict> {
             if let Some((i, other)) = first
                 && (other - length).abs() > AGREE
             {
-                conflicts.push(SizeConflict {
-                    views: (i, j),
-                    extent,
-                    lengths: (other, length),
-                });
+                conflicts.push(SizeConflict { views: (i, j), extent, lengths: (other, length) });
             }
         }
     }
@@ -65,9 +61,5 @@ fn shown(view: &View, extent: Extent) -> Option<f64> {
         Direction::Left | Direction::Right => (Extent::Depth, Extent::Height),
         Direction::Iso => return None,
     };
-    if across == extent {
-        Some(width)
-    } else {
-        (up == extent).then_some(height)
-    }
+    if across == extent { Some(width) } else { (up == extent).then_some(height) }
 }

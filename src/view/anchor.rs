@@ -329,12 +329,8 @@ fn extreme(curves: &[Curve<ViewSpace>], side: &str) -> Option<Anchor> {
 }
 
 fn size(body: &Body, name: &str) -> Option<Size> {
-    let between = |from, to| Size::Distance {
-        from,
-        to,
-        direction: LineDirection::Auto,
-        sign: None,
-    };
+    let between =
+        |from, to| Size::Distance { from, to, direction: LineDirection::Auto, sign: None };
     match body {
         Body::Line(l) => (name == "length").then(|| ends(l)),
         Body::Arc(a) => (name == "radius").then_some(Size::Radius(*a)),
@@ -443,11 +439,7 @@ fn quadrant(side: &str) -> Option<f64> {
 }
 
 fn side_sign(name: &str, positive: &str, negative: &str) -> Option<f64> {
-    if name == positive {
-        Some(1.0)
-    } else {
-        (name == negative).then_some(-1.0)
-    }
+    if name == positive { Some(1.0) } else { (name == negative).then_some(-1.0) }
 }
 
 /// The places and sizes that a member has, for messages.

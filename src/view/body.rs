@@ -153,11 +153,8 @@ mod tests {
     #[test]
     fn outlines_close_and_have_the_length_of_their_formula() {
         let still = Motion::Shift(Vector::new(0.0, 0.0));
-        let slot = Outline::Slot {
-            from: Point::new(0.0, 0.0),
-            to: Point::new(20.0, 0.0),
-            width: 8.0,
-        };
+        let slot =
+            Outline::Slot { from: Point::new(0.0, 0.0), to: Point::new(20.0, 0.0), width: 8.0 };
         let path = &Body::of(&slot, &[], &still).paths()[0];
         assert!(path.meets_itself());
         assert!((path.length() - (40.0 + 8.0 * std::f64::consts::PI)).abs() < 1e-9);

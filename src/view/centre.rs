@@ -70,18 +70,15 @@ fn wanted(shape: &Shape) -> bool {
 }
 
 /// Of concentric circles only the largest gets a cross, unless another asks for its own.
-fn outermost(
-    crosses: Vec<CentreFeature>,
-    forced: impl Fn(&ShapeId) -> bool,
-) -> Vec<CentreFeature> {
+fn outermost(crosses: Vec<CentreFeature>, forced: impl Fn(&ShapeId) -> bool) -> Vec<CentreFeature> {
     let circle = |f: &CentreFeature| match f {
         CentreFeature::Cross { circle, .. } => Some(*circle),
         CentreFeature::Axis { .. } | CentreFeature::Pitch { .. } => None,
     };
     let mut order: Vec<usize> = (0..crosses.len()).collect();
-    let key = |i: usize| circle(&crosses[i]).map_or((0.0, 0.0, 0.0), |c| {
-        (c.centre.x, c.centre.y, -c.radius)
-    });
+    let key = |i: usize| {
+        circle(&crosses[i]).map_or((0.0, 0.0, 0.0), |c| (c.centre.x, c.centre.y, -c.radius))
+    };
     order.sort_by(|a, b| {
         let (p, q) = (key(*a), key(*b));
         p.0.total_cmp(&q.0).then(p.1.total_cmp(&q.1)).then(p.2.total_cmp(&q.2)).then(a.cmp(b))
@@ -90,9 +87,8 @@ fn outermost(
     for (n, i) in order.iter().enumerate() {
         let Some(own) = circle(&crosses[*i]) else { continue };
         let covered = order[..n].iter().rev().take(64).any(|j| {
-            circle(&crosses[*j]).is_some_and(|c| {
-                c.centre.is_at(own.centre) && c.radius >= own.radius && keep[*j]
-            })
+            circle(&crosses[*j])
+                .is_some_and(|c| c.centre.is_at(own.centre) && c.radius >= own.radius && keep[*j])
         });
         let CentreFeature::Cross { shape, .. } = &crosses[*i] else { continue };
         keep[*i] = !covered || forced(shape);

@@ -58,7 +58,13 @@ impl Pattern {
         for i in 0..=(n as usize) {
             let first = i == 0;
             let last = i == n as usize;
-            let part = if first { share(tips[0]) } else if last { share(tips[1]) } else { 1.0 };
+            let part = if first {
+                share(tips[0])
+            } else if last {
+                share(tips[1])
+            } else {
+                1.0
+            };
             ink.push((at, (at + dash * part).min(length)));
             at += dash * part;
             if !last {

@@ -26,9 +26,9 @@ pub fn drawn_view(spec: &ViewSpec, diagnostics: &mut Diagnostics) -> Option<View
     if !sound {
         return None;
     }
-    let extent = edges.iter().filter(|e| {
-        matches!(e.class, LineClass::Visible | LineClass::Cut | LineClass::Hidden)
-    });
+    let extent = edges
+        .iter()
+        .filter(|e| matches!(e.class, LineClass::Visible | LineClass::Cut | LineClass::Hidden));
     let bounds = Rect::union_of(extent.map(|e| e.curve.bounds()))
         .or_else(|| Rect::union_of(edges.iter().map(|e| e.curve.bounds())));
     let Some(bounds) = bounds else {

@@ -20,13 +20,11 @@ pub(super) fn lines(outlines: &[Path<Paper>], angle: f64, spacing: f64) -> Vec<L
     };
     let polygons: Vec<Vec<(f64, f64)>> = outlines
         .iter()
-        .map(|path| {
-            path.curves.iter().flat_map(|c| c.flattened(FLATNESS)).map(turned).collect()
-        })
+        .map(|path| path.curves.iter().flat_map(|c| c.flattened(FLATNESS)).map(turned).collect())
         .collect();
     let heights = polygons.iter().flatten().map(|p| p.1);
-    let (low, high) = heights
-        .fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), v| (l.min(v), h.max(v)));
+    let (low, high) =
+        heights.fold((f64::INFINITY, f64::NEG_INFINITY), |(l, h), v| (l.min(v), h.max(v)));
     if low > high || (high - low) / spacing > MOST {
         return Vec::new();
     }

@@ -172,9 +172,7 @@ impl Table<'_> {
         let small = 2.0 * radius < self.style.centre.small_circle;
         let dashes = lines
             .iter()
-            .flat_map(|l| {
-                if small { vec![Curve::Line(*l)] } else { self.split_dashes(l, &[0.5]) }
-            })
+            .flat_map(|l| if small { vec![Curve::Line(*l)] } else { self.split_dashes(l, &[0.5]) })
             .collect();
         let lines = lines.into_iter().map(Curve::Line).collect();
         PaperCentre { shape: shape.clone(), lines, dashes, width: self.group.narrow }

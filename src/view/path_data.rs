@@ -191,7 +191,9 @@ mod tests {
         let Curve::Arc(arc) = paths[0].curves[0] else { panic!("an arc") };
         // Sweep flag 1 turns from +x to +y, counter-clockwise where y points up (SVG 2, 9.3.8).
         assert!((arc.radius - 10.0).abs() < 1e-12);
-        assert!((arc.sweep - 90.0).abs() < 1e-9 && arc.centre.distance(Point::new(0.0, 0.0)) < 1e-9);
+        assert!(
+            (arc.sweep - 90.0).abs() < 1e-9 && arc.centre.distance(Point::new(0.0, 0.0)) < 1e-9
+        );
     }
 
     #[test]

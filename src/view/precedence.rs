@@ -104,10 +104,7 @@ fn clusters<T: Copy, const N: usize>(
     groups
 }
 
-fn split_by<T: Copy>(
-    mut group: Vec<(usize, T)>,
-    key: impl Fn(&T) -> f64,
-) -> Vec<Vec<(usize, T)>> {
+fn split_by<T: Copy>(mut group: Vec<(usize, T)>, key: impl Fn(&T) -> f64) -> Vec<Vec<(usize, T)>> {
     group.sort_by(|a, b| key(&a.1).total_cmp(&key(&b.1)).then(a.0.cmp(&b.0)));
     let mut groups: Vec<Vec<(usize, T)>> = Vec::new();
     for item in group {
