@@ -192,10 +192,16 @@ impl Fixed {
                     && steep((w[1] - w[0]).angle())
             })
         });
-        let hatching = [0.25, 0.5, 0.75]
-            .into_iter()
-            .filter_map(|t| self.hatch_at(trace.curve.at(t)))
-            .any(steep);
+        let hatching = self.hatched.iter().any(|(bounds, _, angle)| {
+            let stretch = length_inside(&tip, &trace.curve.end(), bounds);
+            // Every millimetre of the leader over the face's box is asked.
+            stretch > 0.0
+                && steep(*angle)
+                && (0..=(trace.curve.length().ceil() as usize)).any(|mm| {
+                    let t = mm as f64 / trace.curve.length().max(1.0);
+                    self.hatch_at(trace.curve.at(t.min(1.0))).is_some()
+                })
+        });
         if touching || hatching { costs.leader_parallel } else { 0.0 }
     }
 

@@ -151,6 +151,7 @@ fn inside(
             let seat =
                 Seat { side: Side::Inside, tier: 0, low: member.first.t, high: member.second.t };
             let sketch = draw(member, axes, level, spot, ground);
+            let cost = cost + p.style.cost.unary.dim_inside_view;
             all.push(Candidate { sketch, cost, seat: Some(seat) });
         }
     }

@@ -61,7 +61,7 @@ impl Written<'_> {
             Parts::Line(text) => label.push(&format!("{before}{text}{close}"), h),
             Parts::Stack { size, upper, lower } => {
                 let look = &practice.style.tolerance;
-                let small = h * look.stack_height;
+                let small = practice.group.deviation;
                 let pitch = small * look.stack_pitch;
                 let head = format!("{before}{size}");
                 if !head.is_empty() {

@@ -3,7 +3,7 @@
 use rstar::{AABB, RTree, RTreeObject};
 
 use crate::annotate::{Head, Practice};
-use crate::geom::{Curve, Line, Point, Quad, Rect, Sheet};
+use crate::geom::{Curve, Line, Point, Quad, Rect, Sheet, distance_line_line};
 use crate::layout::Layout;
 
 /// Areas that lines keep out of, found by place.
@@ -12,12 +12,15 @@ pub(super) struct Gaps {
     heads: RTree<Area>,
 }
 
-/// A convex area.
+/// A convex area; of an arrowhead also its tip.
 struct Area {
     corners: Quad<Sheet>,
+    tip: Option<Point<Sheet>>,
     bounds: Rect<Sheet>,
 }
 
+/// A line this near to an arrowhead's tip, mm, is the one that the arrowhead stands on.
+const ON_TIP: f64 = 0.1;
 /// A part shorter than this, mm, is not worth drawing between two gaps.
 const CRUMB: f64 = 0.3;
 
@@ -38,14 +41,13 @@ impl Gaps {
         let texts = labels
             .chain(view_labels)
             .flat_map(|l| l.quads().collect::<Vec<_>>())
-            .map(|q| Area::new(grown(&q, look.text_gap)))
+            .map(|q| Area::new(grown(&q, look.text_gap), None))
             .collect();
         let heads = layout
             .annotations
             .iter()
             .flat_map(|p| &p.sketch.heads)
-            .filter_map(|h| head_area(h, look.arrow_gap))
-            .map(Area::new)
+            .filter_map(|h| head_area(h, look.arrow_gap).map(|q| Area::new(q, Some(h.tip()))))
             .collect();
         Self { texts: RTree::bulk_load(texts), heads: RTree::bulk_load(heads) }
     }
@@ -63,18 +65,24 @@ impl Gaps {
 }
 
 impl Area {
-    fn new(corners: Quad<Sheet>) -> Self {
-        Self { bounds: corners.bounds(), corners }
+    fn new(corners: Quad<Sheet>, tip: Option<Point<Sheet>>) -> Self {
+        Self { bounds: corners.bounds(), corners, tip }
+    }
+
+    /// Whether a line is the one that this arrowhead stands on.
+    fn stands_on(&self, curve: &Curve<Sheet>) -> bool {
+        let Some(tip) = self.tip else { return false };
+        curve.flattened(0.02).windows(2).any(|w| distance_line_line(tip, tip, w[0], w[1]) < ON_TIP)
     }
 }
 
-/// The body of an arrowhead without its tip, which may well touch a line, widened by `gap`.
+/// An arrowhead, widened by `gap` on both sides.
 fn head_area(head: &Head<Sheet>, gap: f64) -> Option<Quad<Sheet>> {
     match *head {
         Head::Arrow { tip, towards, length, width } => {
             let across = towards.left() * (width / 2.0 + gap);
-            let (near, far) = (tip - towards * (length * 0.15), tip - towards * length);
-            Some(Quad([near + across, far + across, far - across, near - across]))
+            let foot = tip - towards * length;
+            Some(Quad([tip + across, foot + across, foot - across, tip - across]))
         }
         Head::Dot { .. } => None,
     }
@@ -94,6 +102,7 @@ fn cut(curve: &Curve<Sheet>, areas: &RTree<Area>) -> Vec<Curve<Sheet>> {
     let envelope = AABB::from_corners([b.min.x, b.min.y], [b.max.x, b.max.y]);
     let mut covered: Vec<(f64, f64)> = areas
         .locate_in_envelope_intersecting(envelope)
+        .filter(|area| !area.stands_on(curve))
         .flat_map(|area| covered_by(curve, &area.corners))
         .collect();
     if covered.is_empty() {
@@ -172,15 +181,16 @@ mod tests {
     }
 
     #[test]
-    fn a_line_that_touches_only_the_tip_of_an_arrowhead_stays_whole() {
+    fn a_line_that_an_arrowhead_stands_on_stays_whole() {
         let head = Head::Arrow {
             tip: p(0.0, 0.0),
             towards: crate::geom::Vector::new(1.0, 0.0),
             length: 3.5,
             width: 0.92,
         };
-        let area = head_area(&head, 1.5).expect("an arrowhead has a body");
-        assert_eq!(inside(&Line::new(p(0.0, -9.0), p(0.0, 9.0)), &area), None);
-        assert!(inside(&Line::new(p(-2.0, -9.0), p(-2.0, 9.0)), &area).is_some());
+        let area = Area::new(head_area(&head, 1.5).expect("it has a body"), Some(head.tip()));
+        assert!(area.stands_on(&Curve::line(p(0.0, -9.0), p(0.0, 9.0))));
+        let through = Curve::line(p(-2.0, -9.0), p(-2.0, 9.0));
+        assert!(!area.stands_on(&through) && !covered_by(&through, &area.corners).is_empty());
     }
 }

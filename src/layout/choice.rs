@@ -1,8 +1,9 @@
 //! The choice of one candidate for each annotation.
 //!
 //! Greedy start, descent over single annotations, then over pairs: two annotations that are in each
-//! other's way are re-placed together, exactly. That clears what one annotation alone cannot.
-//! Bounded in rounds; the same result on any machine.
+//! other's way are re-placed together, exactly. Where that stalls, an annotation is taken off with
+//! those in its way and all are put back in other orders. Bounded in rounds; the same result on any
+//! machine.
 
 use std::collections::BTreeMap;
 
@@ -13,6 +14,9 @@ use crate::geom::{Rect, Space};
 
 /// Rounds of descent at most; on sheets of a hundred annotations some five are needed.
 const ROUNDS: usize = 24;
+
+/// Annotations rebuilt together at most: enough for the tiers of one side.
+const PART: usize = 7;
 
 /// Not yet computed.
 const UNKNOWN: i64 = i64::MIN;
@@ -64,11 +68,113 @@ impl<'a, S: Space> Problem<'a, S> {
         for _ in 0..ROUNDS {
             let moved = self.descend(&mut picks);
             let paired = self.descend_pairs(&mut picks);
-            if !moved && !paired {
+            if !moved && !paired && !self.rebuild_parts(&mut picks) {
                 break;
             }
         }
         picks
+    }
+
+    /// Takes an annotation and those in its way off the sheet and puts them back in a few other
+    /// orders; keeps what is cheaper. That clears knots of three and more.
+    fn rebuild_parts(&mut self, picks: &mut Vec<usize>) -> bool {
+        let mut better = false;
+        let mut order: Vec<(i64, usize)> = (0..picks.len())
+            .map(|i| {
+                let costs = self.costs_of(i, picks, None);
+                let least = self.choosers[i].choices.iter().map(|o| o.cost).min().unwrap_or(0);
+                (costs[picks[i]] - least, i)
+            })
+            .filter(|(excess, _)| *excess > 0)
+            .collect();
+        order.sort_by(|a, b| b.0.cmp(&a.0).then(a.1.cmp(&b.1)));
+        for (_, seed) in order {
+            let part = self.part_around(seed, picks);
+            let now = self.cost_of_part(&part, picks);
+            for first in 0..part.len() {
+                let mut trial = picks.clone();
+                for i in &part {
+                    trial[*i] = usize::MAX;
+                }
+                let turned = part[first..].iter().chain(&part[..first]);
+                for i in turned {
+                    let costs = self.costs_of(*i, &trial, None);
+                    trial[*i] = least(&costs);
+                }
+                self.descend_within(&part, &mut trial);
+                if self.cost_of_part(&part, &trial) < now {
+                    *picks = trial;
+                    better = true;
+                    break;
+                }
+            }
+        }
+        better
+    }
+
+    /// The seed and the annotations that cost it most, or would if it stood where it likes best.
+    fn part_around(&mut self, seed: usize, picks: &[usize]) -> Vec<usize> {
+        let wish = self.choosers[seed]
+            .choices
+            .iter()
+            .enumerate()
+            .min_by_key(|(i, o)| (o.cost, *i))
+            .map_or(0, |(i, _)| i);
+        let mut others: Vec<(i64, usize)> = (0..self.neighbours[seed].len())
+            .map(|n| {
+                let (j, index) = self.neighbours[seed][n];
+                let mut pair = |x: usize| {
+                    if seed < j {
+                        self.pair(index, x, picks[j])
+                    } else {
+                        self.pair(index, picks[j], x)
+                    }
+                };
+                (pair(wish).max(pair(picks[seed])), j)
+            })
+            .filter(|(cost, _)| *cost > 0)
+            .collect();
+        others.sort_by(|a, b| b.0.cmp(&a.0).then(a.1.cmp(&b.1)));
+        let mut part = vec![seed];
+        part.extend(others.into_iter().take(PART - 1).map(|(_, j)| j));
+        part
+    }
+
+    fn descend_within(&mut self, part: &[usize], picks: &mut [usize]) {
+        for _ in 0..ROUNDS {
+            let mut moved = false;
+            for i in part {
+                let costs = self.costs_of(*i, picks, None);
+                let best = least(&costs);
+                if costs[best] < costs[picks[*i]] {
+                    picks[*i] = best;
+                    moved = true;
+                }
+            }
+            if !moved {
+                break;
+            }
+        }
+    }
+
+    /// What the annotations of a part cost, pairs among themselves counted once.
+    fn cost_of_part(&mut self, part: &[usize], picks: &[usize]) -> i64 {
+        let mut total = 0;
+        for i in part {
+            total += self.choosers[*i].choices[picks[*i]].cost;
+            for n in 0..self.neighbours[*i].len() {
+                let (j, index) = self.neighbours[*i][n];
+                if part.contains(&j) && j < *i {
+                    continue;
+                }
+                total += if *i < j {
+                    self.pair(index, picks[*i], picks[j])
+                } else {
+                    self.pair(index, picks[j], picks[*i])
+                };
+            }
+        }
+        total
     }
 
     /// One after another takes what is cheapest beside those before it; fewest cheap ways first.

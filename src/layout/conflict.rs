@@ -3,6 +3,7 @@
 use super::ink::{Choice, Ink, InkKind, InkLine, whole};
 use crate::annotate::Practice;
 use crate::geom::{Crossing, Line, Quad, Rect, Space, line_crossing, overlap_length};
+use crate::spec::Side;
 use crate::style::PairCosts;
 
 /// Lines within this distance, mm, run on one another.
@@ -28,10 +29,13 @@ pub(super) fn pair_cost<S: Space>(
     if a.ink.bounds.distance(&b.ink.bounds) > reach {
         return whole(order);
     }
+    // Tiers have their own distances; only what stands free of them wants more room.
+    let tiered = |c: &Choice<S>| c.seat.is_some_and(|s| s.side != Side::Inside);
+    let roomy = if tiered(a) && tiered(b) { 0.0 } else { practice.style.clearance.roomy };
     let cost = order
         + texts(&a.ink, &b.ink, practice)
-        + texts_and_lines(&a.ink, &b.ink, practice)
-        + texts_and_lines(&b.ink, &a.ink, practice)
+        + texts_and_lines(&a.ink, &b.ink, roomy, practice)
+        + texts_and_lines(&b.ink, &a.ink, roomy, practice)
         + lines(&a.ink, &b.ink, practice);
     whole(cost)
 }
@@ -41,22 +45,37 @@ fn texts<S: Space>(a: &Ink<S>, b: &Ink<S>, practice: &Practice<'_>) -> f64 {
     let mut cost = 0.0;
     for (p, p_box) in &a.texts {
         for (q, q_box) in &b.texts {
-            if p_box.distance(q_box) < clear && p.distance(q) < clear {
+            let apart = p_box.distance(q_box);
+            if apart < clear && p.distance(q) < clear {
                 cost += practice.style.cost.pair.text_text;
+            } else if apart < practice.style.clearance.roomy {
+                cost += practice.style.cost.group.texts_crowded;
             }
         }
     }
     cost
 }
 
-fn texts_and_lines<S: Space>(texts: &Ink<S>, lines: &Ink<S>, practice: &Practice<'_>) -> f64 {
+fn texts_and_lines<S: Space>(
+    texts: &Ink<S>,
+    lines: &Ink<S>,
+    roomy: f64,
+    practice: &Practice<'_>,
+) -> f64 {
     let clear = practice.style.clearance.text_line + practice.group.narrow / 2.0;
     let pair = &practice.style.cost.pair;
     let mut cost = 0.0;
     for (quad, text_box) in &texts.texts {
         for l in &lines.lines {
             let reach = clear + l.half_width;
-            if text_box.distance(&l.bounds) < reach && enters(quad, text_box, &l.line, reach) {
+            if text_box.distance(&l.bounds) >= roomy.max(reach) {
+                continue;
+            }
+            if !enters(quad, text_box, &l.line, reach) {
+                if enters(quad, text_box, &l.line, roomy) {
+                    cost += practice.style.cost.group.text_and_line_crowded;
+                }
+            } else {
                 cost += match l.kind {
                     InkKind::Dim => pair.text_dim,
                     InkKind::Ext => pair.text_ext,
@@ -156,7 +175,7 @@ fn near_parallel<S: Space>(a: &Line<S>, b: &Line<S>) -> f64 {
 fn tier_order<S>(a: &Choice<S>, b: &Choice<S>, practice: &Practice<'_>) -> f64 {
     let (Some(p), Some(q)) = (a.seat, b.seat) else { return 0.0 };
     let over_each_other = p.high.min(q.high) - p.low.max(q.low) > NEIGHBOUR_STRETCH;
-    if p.side != q.side || p.side == crate::spec::Side::Inside || !over_each_other {
+    if p.side != q.side || p.side == Side::Inside || !over_each_other {
         return 0.0;
     }
     let (inner, outer) = match p.tier.cmp(&q.tier) {

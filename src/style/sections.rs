@@ -70,6 +70,8 @@ pub struct Group {
     pub lettering: f64,
     /// Height of dimensions and notes.
     pub text: f64,
+    /// Height of stacked deviations and limits.
+    pub deviation: f64,
     /// Height of section, view and detail letters.
     pub label: f64,
     /// Outline to first dimension line.
@@ -152,8 +154,6 @@ pub struct DimensionSpec {
 #[derive(Clone, Debug, PartialEq, Deserialize)]
 #[serde(deny_unknown_fields)]
 pub struct ToleranceLook {
-    /// Height of stacked deviations and limits as a share of the text height.
-    pub stack_height: f64,
     /// Base line to base line of a stack, in its text height.
     pub stack_pitch: f64,
     /// Blank between size and tolerance.
@@ -220,6 +220,8 @@ pub struct ClearanceSpec {
     pub text_line: f64,
     /// Text to an arrowhead.
     pub text_arrow: f64,
+    /// Text to the text and lines of other annotations, where there is room.
+    pub roomy: f64,
     /// Ink to the frame.
     pub frame: f64,
     /// Ink of one view to that of another.

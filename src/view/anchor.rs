@@ -237,7 +237,7 @@ fn place(body: &Body, name: &str) -> Option<Anchor> {
             "axis" => slot_axis(from, to).map(Anchor::Axis),
             side => extreme(&body.curves(), side),
         },
-        Body::Rectangle { corners, axis, .. } => rectangle_place(corners, *axis, name),
+        Body::Rectangle { corners, axis, radius } => rectangle_place(corners, *radius, *axis, name),
         Body::Outline(_) => outline_place(&body.curves(), name),
     }
 }
@@ -265,6 +265,7 @@ fn arc_place(a: &Arc<ViewSpace>, name: &str) -> Option<Anchor> {
 
 fn rectangle_place(
     corners: &[Point<ViewSpace>; 4],
+    radius: f64,
     axis: Option<Line<ViewSpace>>,
     name: &str,
 ) -> Option<Anchor> {
@@ -285,7 +286,8 @@ fn rectangle_place(
     let towards = crate::geom::Vector::<ViewSpace>::at_angle(degrees);
     let value = |l: &Line<ViewSpace>| (l.at(0.5) - centre).dot(towards);
     let side = Body::sides(corners).into_iter().max_by(|a, b| value(a).total_cmp(&value(b)));
-    side.map(Anchor::Edge)
+    // Extension lines begin where the straight part ends, not at a corner that is not there.
+    side.map(|l| Anchor::Edge(Body::straight(&l, radius)))
 }
 
 fn outline_place(curves: &[Curve<ViewSpace>], name: &str) -> Option<Anchor> {
@@ -353,7 +355,7 @@ fn size(body: &Body, name: &str) -> Option<Size> {
             }
         }
         Body::Rectangle { corners, radius, axis } => {
-            let side = |name| rectangle_place(corners, *axis, name);
+            let side = |name| rectangle_place(corners, *radius, *axis, name);
             let level = axis.map(|l| l.vector().x.abs() >= l.vector().y.abs());
             match (name, level) {
                 ("width", _) | ("length", Some(true)) | ("diameter", Some(false)) => {

@@ -1,7 +1,7 @@
 //! A member of a shape, moved to its place: what anchors and sizes are read off.
 
 use super::repeat::Motion;
-use crate::geom::{Arc, Curve, Line, Path, Point, Rect, Vector, View as ViewSpace};
+use crate::geom::{Arc, Curve, Line, Path, Point, Vector, View as ViewSpace};
 use crate::spec::{Axis, Outline};
 
 /// One member of a shape in view space.
@@ -93,9 +93,14 @@ impl Body {
         self.paths().into_iter().flat_map(|p| p.curves).collect()
     }
 
-    /// The box around its outline.
-    pub(super) fn bounds(&self) -> Option<Rect<ViewSpace>> {
-        Rect::union_of(self.curves().iter().map(Curve::bounds))
+    /// The straight part of a rectangle's side: without the rounded corners, unless nothing is left.
+    pub(super) fn straight(side: &Line<ViewSpace>, radius: f64) -> Line<ViewSpace> {
+        match side.vector().unit() {
+            Some(u) if side.length() > 2.0 * radius => {
+                Line::new(side.from + u * radius, side.to - u * radius)
+            }
+            _ => *side,
+        }
     }
 
     /// The sides of a rectangle in walking order, sharp.
