@@ -13,7 +13,10 @@ mod sections;
 
 pub use builtin::{builtin, builtin_names, builtin_text};
 pub use cost::{Costs, GroupCosts, PairCosts, UnaryCosts};
-pub use format::{Cell, CellText, FormatSpec, FrameSpec, TableSpec, TitleBlockSpec, ZoneSpec};
+pub use format::{
+    Cell, CellKey, FormatSpec, FrameSpec, RevisionColumn, RevisionKey, RevisionTableSpec,
+    SheetSide, SignSpec, TitleBlockSpec, ZoneSpec,
+};
 pub use sections::{
     ArrowSpec, CentreSpec, ClearanceSpec, DashSet, DashSpec, DimensionSpec, Group, HatchSpec,
     LeaderSpec, NumberSpec, Projection, SheetLook, Style, ToleranceLook, ViewSpacing, WordSpec,

@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, TableSpec, TitleBlockSpec};
+use super::{Costs, FormatSpec, FrameSpec, RevisionTableSpec, TitleBlockSpec};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -45,7 +45,7 @@ pub struct Style {
     /// The title block.
     pub title_block: TitleBlockSpec,
     /// The revision table.
-    pub revision_table: TableSpec,
+    pub revision_table: RevisionTableSpec,
     /// General notes.
     pub notes: SheetLook,
     /// Fixed words.
@@ -274,19 +274,21 @@ pub enum Projection {
     ThirdAngle,
 }
 
-/// General notes.
+/// General notes: a heading and a numbered list.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
 #[serde(deny_unknown_fields)]
 pub struct SheetLook {
     /// Height of the heading.
-    pub heading: f64,
+    pub heading_h: f64,
     /// Height of the notes.
-    pub text: f64,
+    pub text_h: f64,
     /// Base line to base line.
-    pub pitch: f64,
+    pub pitch_h: f64,
+    /// Blank between a note's number and its text.
+    pub indent_h: f64,
     /// Widest column.
     pub width: f64,
-    /// Distance to frame and title block.
+    /// Distance to frame, title block and revision table.
     pub gap: f64,
 }
 
