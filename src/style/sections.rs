@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, RevisionTableSpec, TitleBlockSpec};
+use super::{Costs, FormatSpec, FrameSpec, LinePitch, RevisionTableSpec, TitleBlockSpec};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -283,7 +283,7 @@ pub struct SheetLook {
     /// Height of the notes.
     pub text_h: f64,
     /// Base line to base line.
-    pub pitch_h: f64,
+    pub line_pitch: LinePitch,
     /// Blank between a note's number and its text.
     pub indent_h: f64,
     /// Widest column.
