@@ -6,6 +6,7 @@ use super::{Extent, Misfit, Spot};
 use crate::geom::{COINCIDENT, Rect, Sheet};
 use crate::ident::ItemId;
 use crate::source::Span;
+use crate::style::LinePitch;
 use crate::text::Run;
 
 /// What stands at the end of a text that was cut.
@@ -26,6 +27,8 @@ pub(super) struct Fitted {
     pub lines: Vec<Arc<Run>>,
     /// Its text height.
     pub height: f64,
+    /// Base line to base line, mm.
+    pub pitch: f64,
     /// Why it had to be cut, if it was.
     pub shortage: Option<Shortage>,
 }
@@ -54,20 +57,31 @@ pub(super) fn heights_from(first: f64, list: &[f64]) -> Vec<f64> {
 }
 
 /// `text` in `room` at the first of `heights` at which it fits, on as many lines as there is room
-/// for; `pitch` is base line to base line in text heights. At the last height it is cut.
-pub(super) fn fit(text: &str, room: Room, heights: &[f64], pitch: f64) -> Fitted {
-    let mut least = (0.0, 1, Vec::new());
+/// for. At the last height it is cut.
+pub(super) fn fit(text: &str, room: Room, heights: &[f64], line_pitch: LinePitch) -> Fitted {
+    let mut least = Vec::new();
+    let mut at = (0.0, 0.0, 1);
     for &height in heights {
         let lines = wrap(text, height, room.width);
+        let pitch = pitch(&lines, height, line_pitch);
         let most = most_lines(room.height, height, pitch);
         if lines.len() <= most && lines.iter().all(|l| width(l) <= room.width + COINCIDENT) {
-            return Fitted { lines: shared(lines), height, shortage: None };
+            return Fitted { lines: shared(lines), height, pitch, shortage: None };
         }
-        least = (height, most.max(1), lines);
+        at = (height, pitch, most.max(1));
+        least = lines;
     }
-    let (height, most, lines) = least;
-    let shortage = shortage(&lines, room, (height, pitch, most));
-    Fitted { lines: shared(cut(&lines, most, room.width)), height, shortage: Some(shortage) }
+    let (height, pitch, most) = at;
+    let shortage = Some(shortage(&least, room, at));
+    Fitted { lines: shared(cut(&least, most, room.width)), height, pitch, shortage }
+}
+
+/// Base line to base line of these lines, mm.
+pub(super) fn pitch(lines: &[Run], height: f64, pitch: LinePitch) -> f64 {
+    // Stems of lower case may rise a little over the capitals, accents by a quarter and more.
+    let accented = |l: &Run| -l.ink.min.y > 1.15 * height;
+    let below = lines.iter().skip(1).any(accented);
+    height * if below { pitch.accented } else { pitch.plain }
 }
 
 /// `text` in lines no wider than `width`; a word that alone is wider is broken.
@@ -110,6 +124,11 @@ pub(super) fn width(line: &Run) -> f64 {
 }
 
 impl Fitted {
+    /// Top of the first capitals to the last base line, mm.
+    pub(super) fn used(&self) -> f64 {
+        self.height + self.lines.len().saturating_sub(1) as f64 * self.pitch
+    }
+
     /// The misfit that a cut text makes at its slot.
     pub(super) fn misfit(&self, slot: &Slot<'_>, text: &str) -> Option<Misfit> {
         self.shortage.map(|s| s.at(slot, text))
@@ -139,7 +158,7 @@ fn shared(lines: Vec<Run>) -> Vec<Arc<Run>> {
 /// How many lines of this height have room above each other.
 fn most_lines(room: f64, height: f64, pitch: f64) -> usize {
     let spare = room + COINCIDENT - height;
-    if spare < 0.0 { 0 } else { (spare / (pitch * height)).floor() as usize + 1 }
+    if spare < 0.0 { 0 } else { (spare / pitch).floor() as usize + 1 }
 }
 
 /// Why the lines do not fit: one of them sticks out, or there is room for one only and there are
@@ -153,7 +172,7 @@ fn shortage(lines: &[Run], room: Room, (height, pitch, most): (f64, f64, usize))
         (Extent::Width, width(&Run::new(&words.join(" "), height)), room.width)
     } else {
         let steps = lines.len().saturating_sub(1) as f64;
-        (Extent::Height, height * (1.0 + steps * pitch), room.height)
+        (Extent::Height, height + steps * pitch, room.height)
     };
     Shortage { extent, needed, available }
 }
@@ -165,18 +184,25 @@ fn wrap(text: &str, height: f64, room: f64) -> Vec<Run> {
     if whole.is_blank() || width(&whole) <= room + COINCIDENT {
         return if whole.is_blank() { Vec::new() } else { vec![whole] };
     }
-    let mut lines: Vec<Run> = Vec::new();
+    let blank = Run::new(" ", height).advance;
+    let mut lines: Vec<String> = Vec::new();
+    // The font has no kerning, so a line is as wide as its words and the blanks between them.
+    let mut at = 0.0;
     for word in text.split([' ', '\t', '\n', '\r']).filter(|w| !w.is_empty()) {
-        if let Some(line) = lines.last_mut() {
-            let longer = Run::new(&format!("{} {word}", line.text), height);
-            if width(&longer) <= room + COINCIDENT {
-                *line = longer;
-                continue;
+        let run = Run::new(word, height);
+        match lines.last_mut() {
+            Some(line) if at + blank + width(&run) <= room + COINCIDENT => {
+                line.push(' ');
+                line.push_str(word);
+                at += blank + run.advance;
+            }
+            Some(_) | None => {
+                lines.push(word.to_owned());
+                at = run.advance;
             }
         }
-        lines.push(Run::new(word, height));
     }
-    lines
+    lines.iter().map(|line| Run::new(line, height)).collect()
 }
 
 /// `text` cut after the last word or, where that would leave less than half a line, the last
@@ -188,19 +214,27 @@ fn shortened(text: &str, height: f64, room: f64) -> Run {
     let letters = &text[..end];
     let at_word = text[end..].starts_with(' ').then_some(end);
     let word_end = at_word.or_else(|| letters.rfind(' ').filter(|i| *i * 2 > end));
-    let kept = text[..word_end.unwrap_or(end)].trim_end();
+    // A comma or colon that leads on to what is missing would look odd before the mark.
+    let kept = text[..word_end.unwrap_or(end)].trim_end_matches([' ', ',', ';', ':']);
     Run::new(&format!("{kept}{mark}"), height)
 }
 
 /// Byte at which the longest beginning of `text` that fits with `tail` after it ends; 0 if not even
 /// its first letter does.
 fn last_that_fits(text: &str, tail: &str, height: f64, room: f64) -> usize {
-    let ends = text.char_indices().map(|(i, c)| i + c.len_utf8());
-    let fitting = ends.take_while(|end| {
-        let shown = format!("{}{tail}", text[..*end].trim_end());
-        width(&Run::new(&shown, height)) <= room + COINCIDENT
-    });
-    fitting.last().unwrap_or(0)
+    let tail = Run::new(tail, height);
+    let mut letter = [0; 4];
+    let (mut at, mut end) = (0.0, 0);
+    for c in text.chars() {
+        let run = Run::new(c.encode_utf8(&mut letter), height);
+        let ink_end = if tail.is_blank() { width(&run) } else { run.advance + width(&tail) };
+        if at + ink_end > room + COINCIDENT {
+            break;
+        }
+        at += run.advance;
+        end += c.len_utf8();
+    }
+    end
 }
 
 #[cfg(test)]
@@ -208,6 +242,7 @@ mod tests {
     use super::*;
 
     const HEIGHTS: [f64; 3] = [5.0, 3.5, 2.5];
+    const PITCH: LinePitch = LinePitch { plain: 1.5, accented: 1.9 };
 
     fn texts(f: &Fitted) -> Vec<&str> {
         f.lines.iter().map(|l| l.text.as_str()).collect()
@@ -215,33 +250,33 @@ mod tests {
 
     #[test]
     fn a_text_that_fits_keeps_its_height_and_stands_on_one_line() {
-        let f = fit("Bracket", Room { width: 68.0, height: 9.0 }, &HEIGHTS, 1.5);
+        let f = fit("Bracket", Room { width: 68.0, height: 9.0 }, &HEIGHTS, PITCH);
         assert_eq!((f.height, texts(&f)), (5.0, vec!["Bracket"]));
         assert!(f.shortage.is_none());
     }
 
     #[test]
     fn lines_are_preferred_to_a_smaller_height_and_that_to_a_cut() {
-        let long = "Bearing pedestal for shafts";
-        let two = fit(long, Room { width: 60.0, height: 12.5 }, &HEIGHTS, 1.5);
-        assert_eq!((two.height, texts(&two)), (5.0, vec!["Bearing pedestal", "for shafts"]));
-        let small = fit(long, Room { width: 60.0, height: 5.0 }, &HEIGHTS, 1.5);
+        let long = "Bearing pedestal";
+        let two = fit(long, Room { width: 40.0, height: 12.5 }, &HEIGHTS, PITCH);
+        assert_eq!((two.height, texts(&two)), (5.0, vec!["Bearing", "pedestal"]));
+        let small = fit(long, Room { width: 45.0, height: 5.0 }, &HEIGHTS, PITCH);
         assert_eq!((small.height, texts(&small)), (3.5, vec![long]));
-        let tiny = fit(long, Room { width: 30.0, height: 5.0 }, &HEIGHTS, 1.5);
-        assert_eq!((tiny.height, texts(&tiny)), (2.5, vec!["Bearing pedestal…"]));
+        let tiny = fit(long, Room { width: 25.0, height: 5.0 }, &HEIGHTS, PITCH);
+        assert_eq!((tiny.height, texts(&tiny)), (2.5, vec!["Bearing…"]));
     }
 
     #[test]
     fn what_was_cut_says_how_much_room_it_needs() {
         let room = Room { width: 20.0, height: 2.5 };
-        let word = fit("Unterlegscheibenhalterung", room, &[2.5], 1.5);
+        let word = fit("Unterlegscheibenhalterung", room, &[2.5], PITCH);
         let s = word.shortage.expect("a word of 25 letters has no room in 20 mm");
         assert_eq!(s.extent, Extent::Width);
         assert!(s.needed > 35.0 && (s.available - 20.0).abs() < 1e-9, "{s:?}");
         assert!(texts(&word)[0].ends_with('…') && width(&word.lines[0]) <= 20.0);
 
         let rows =
-            fit("one two three four five six", Room { width: 12.0, height: 6.25 }, &[2.5], 1.5);
+            fit("one two three four five six", Room { width: 12.0, height: 6.25 }, &[2.5], PITCH);
         let s = rows.shortage.expect("there is room for two lines");
         assert_eq!((s.extent, rows.lines.len()), (Extent::Height, 2));
         assert!(s.needed > s.available, "{s:?}");
@@ -252,7 +287,7 @@ mod tests {
         for mm in 1..40 {
             let room = f64::from(mm);
             for text in ["Bracket, mounting, left hand", "ÄÖÜ-12345678901234567890", "W", ""] {
-                for line in fit(text, Room { width: room, height: 9.0 }, &HEIGHTS, 1.5).lines {
+                for line in fit(text, Room { width: room, height: 9.0 }, &HEIGHTS, PITCH).lines {
                     let bare = line.text == "…";
                     assert!(bare || width(&line) <= room + 1e-3, "{room} {:?}", line.text);
                 }
@@ -271,7 +306,16 @@ mod tests {
     }
 
     #[test]
+    fn accents_on_capitals_keep_lines_further_apart() {
+        let room = Room { width: 30.0, height: 9.0 };
+        let plain = fit("lagging cover Olpe", room, &[2.5], PITCH);
+        let accented = fit("lagging cover Ölpe", room, &[2.5], PITCH);
+        assert_eq!((plain.lines.len(), plain.pitch), (2, 3.75));
+        assert_eq!((accented.lines.len(), accented.pitch), (2, 4.75));
+    }
+
+    #[test]
     fn a_blank_text_has_no_lines() {
-        assert!(fit("  ", Room { width: 9.0, height: 9.0 }, &HEIGHTS, 1.5).lines.is_empty());
+        assert!(fit("  ", Room { width: 9.0, height: 9.0 }, &HEIGHTS, PITCH).lines.is_empty());
     }
 }

@@ -3,7 +3,7 @@
 
 use std::sync::Arc;
 
-use super::fit::{Shortage, Slot, broken, cut};
+use super::fit::{Shortage, Slot, broken, cut, pitch};
 use super::{Block, Extent, Job, Made, Spot};
 use crate::geom::{Point, Rect, Sheet};
 use crate::scene::{Item, ItemKind, Mark, PlacedText};
@@ -21,7 +21,6 @@ struct NoteLine {
 struct Measures {
     heading: f64,
     text: f64,
-    pitch: f64,
     indent: f64,
     width: f64,
 }
@@ -39,16 +38,17 @@ pub(super) fn notes(
     let foot = foot(job, &title_block);
     let measures = Measures::of(job, foot.width());
     let mut lines = lines(job, &measures);
+    let pitch = line_pitch(&lines, job, &measures);
 
     // Tails of letters reach below the last base line.
     let tails = lines.last().map_or(0.0, NoteLine::depth);
     let last_base = foot.max.y - tails;
     let top = highest(job, &foot, table);
-    let steps = ((last_base - top - measures.heading) / measures.pitch).floor().max(1.0);
+    let steps = ((last_base - top - measures.heading) / pitch).floor().max(1.0);
     let most = steps as usize + 1;
     let shortage = (lines.len() > most).then(|| Shortage {
         extent: Extent::Height,
-        needed: measures.heading + (lines.len() - 1) as f64 * measures.pitch + tails,
+        needed: measures.heading + (lines.len() - 1) as f64 * pitch + tails,
         available: foot.max.y - top,
     });
     let first_cut = lines.get(most).and_then(|l| l.span);
@@ -57,13 +57,23 @@ pub(super) fn notes(
     }
 
     let id = job.id("general-notes");
-    let item =
-        Item::new(id.clone(), ItemKind::Note, marks(lines, &measures, (foot.min.x, last_base)));
+    let item = Item::new(id.clone(), ItemKind::Note, marks(lines, pitch, (foot.min.x, last_base)));
     let area = item.bounds().unwrap_or(foot);
     let slot = Slot { item: &id, spot: Spot::Notes, place: area, span: first_cut };
     let heading = job.style.words.get("notes");
     let misfits = shortage.map(|s| s.at(&slot, heading)).into_iter().collect();
     Some(Made { items: vec![item], block: Block { item: id, area }, misfits })
+}
+
+/// Height that the heading, one line below it and the distances to other blocks take, mm; 0 without
+/// notes. The revision table leaves that much.
+pub(super) fn least_height(job: &Job<'_>) -> f64 {
+    if job.drawing.sheet.notes.is_empty() {
+        return 0.0;
+    }
+    let measures = Measures::of(job, 0.0);
+    let look = &job.style.notes;
+    measures.heading + 2.0 * measures.text * look.line_pitch.accented + 2.0 * look.gap
 }
 
 /// Where the block may stand: left and right sides, and its lower side; its height is not meant.
@@ -95,7 +105,6 @@ impl Measures {
         Self {
             heading: look.heading_h * h,
             text: look.text_h * h,
-            pitch: look.pitch_h * h,
             indent: widest + look.indent_h * h,
             width,
         }
@@ -121,6 +130,12 @@ fn lines(job: &Job<'_>, measures: &Measures) -> Vec<NoteLine> {
     all
 }
 
+/// Base line to base line, mm: the same throughout the block.
+fn line_pitch(lines: &[NoteLine], job: &Job<'_>, measures: &Measures) -> f64 {
+    let runs: Vec<Run> = lines.iter().flat_map(|l| &l.runs).map(|(_, run)| run.clone()).collect();
+    pitch(&runs, measures.text, job.style.notes.line_pitch)
+}
+
 /// Leaves the first `most` lines, the last with a mark that something is missing.
 fn cut_after(lines: &mut Vec<NoteLine>, most: usize, measures: &Measures) {
     lines.truncate(most);
@@ -131,9 +146,9 @@ fn cut_after(lines: &mut Vec<NoteLine>, most: usize, measures: &Measures) {
     }
 }
 
-fn marks(lines: Vec<NoteLine>, measures: &Measures, (left, last_base): (f64, f64)) -> Vec<Mark> {
+fn marks(lines: Vec<NoteLine>, pitch: f64, (left, last_base): (f64, f64)) -> Vec<Mark> {
     let count = lines.len();
-    let base = |i: usize| last_base - (count - 1 - i) as f64 * measures.pitch;
+    let base = |i: usize| last_base - (count - 1 - i) as f64 * pitch;
     let mut marks = Vec::new();
     for (i, line) in lines.into_iter().enumerate() {
         marks.extend(line.runs.into_iter().map(|(indent, run)| {

@@ -2,7 +2,8 @@
 
 use std::sync::Arc;
 
-use super::fit::{Room, Shortage, Slot, broken, fit};
+use super::fit::{Room, Shortage, Slot, broken, fit, pitch};
+use super::notes::least_height;
 use super::{Block, Extent, Job, Made, Misfit, Spot};
 use crate::geom::{Path, Point, Rect, Sheet, same};
 use crate::ident::ItemId;
@@ -14,14 +15,14 @@ use crate::text::Run;
 
 /// A row before it has its place.
 struct Row {
-    /// Lines of each column.
-    cells: Vec<Vec<Arc<Run>>>,
+    /// Lines of each column, and base line to base line, mm.
+    cells: Vec<(Vec<Arc<Run>>, f64)>,
     height: f64,
     misfits: Vec<Misfit>,
 }
 
-/// The revision table of a sheet; `None` without revisions. Where the rows have no room above the
-/// title block, the oldest are left out.
+/// The revision table of a sheet; `None` without revisions. Where the rows have no room above
+/// title block and notes, the oldest are left out.
 pub(super) fn revision_table(job: &Job<'_>, title_block: &Block) -> Option<Made> {
     if job.drawing.revisions.is_empty() {
         return None;
@@ -30,7 +31,8 @@ pub(super) fn revision_table(job: &Job<'_>, title_block: &Block) -> Option<Made>
     let id = job.id("revision-table");
     let width: f64 = spec.column.iter().map(|c| c.width).sum();
     let corner = Point::new(job.frame.max.x - width, job.frame.min.y);
-    let available = title_block.area.min.y - job.style.views.block_gap - job.frame.min.y;
+    let below = job.style.views.block_gap + least_height(job);
+    let available = title_block.area.min.y - below - job.frame.min.y;
 
     let mut rows = vec![header(job, &id, corner)];
     let revisions = job.drawing.revisions.iter().enumerate();
@@ -116,15 +118,16 @@ impl Row {
             Point::new(left + column.width, corner.y + spec.row),
         );
         self.misfits.extend(fitted.misfit(&Slot { item, spot, place, span }, text));
-        self.cells.push(fitted.lines);
+        self.cells.push((fitted.lines, fitted.pitch));
     }
 
     /// Text on as many lines as it takes; the row grows with it.
     fn put_wrapped(&mut self, spec: &RevisionTableSpec, column: &RevisionColumn, text: &str) {
         let lines = broken(text, spec.text, column.width - 2.0 * spec.padding);
         let more = lines.len().saturating_sub(1) as f64;
-        self.height = self.height.max(spec.row + more * spec.text * spec.line_pitch);
-        self.cells.push(lines.into_iter().map(Arc::new).collect());
+        let pitch = pitch(&lines, spec.text, spec.line_pitch);
+        self.height = self.height.max(spec.row + more * pitch);
+        self.cells.push((lines.into_iter().map(Arc::new).collect(), pitch));
     }
 }
 
@@ -158,10 +161,11 @@ fn lines(rows: &[Row], job: &Job<'_>, area: &Rect<Sheet>) -> Vec<Mark> {
             below
         })
         .collect();
-    let mut wide = vec![level(bottoms[0]), level(area.max.y)];
+    let mut outline = vec![Point::new(area.min.x, area.max.y), area.max];
     if !same(area.min.x, job.frame.min.x) {
-        wide.push(line(area.min.x, area.min.y, area.min.x, area.max.y));
+        outline.insert(0, area.min);
     }
+    let wide = vec![level(bottoms[0]), Path::polyline(&outline, false)];
     let between = bottoms[1..].iter().take(rows.len().saturating_sub(2)).map(|y| level(*y));
     let columns = spec.column.iter().skip(1).map(|c| {
         let x = area.min.x + left_of(spec, c);
@@ -178,12 +182,13 @@ fn texts(rows: &[Row], spec: &RevisionTableSpec, corner: Point<Sheet>) -> Vec<Ma
     let mut marks = Vec::new();
     let mut top = corner.y;
     for row in rows {
-        for (column, lines) in spec.column.iter().zip(&row.cells) {
+        for (column, (lines, pitch)) in spec.column.iter().zip(&row.cells) {
             let left = corner.x + left_of(spec, column) + spec.padding;
             let first = top + (spec.row + spec.text) / 2.0;
             marks.extend(lines.iter().enumerate().map(|(i, run)| {
-                let base = first + i as f64 * spec.text * spec.line_pitch;
-                Mark::Text(PlacedText::new(run.clone(), Point::new(left, base), 0.0))
+                let base = first + i as f64 * pitch;
+                let origin = Point::new(left - run.ink.min.x, base);
+                Mark::Text(PlacedText::new(run.clone(), origin, 0.0))
             }));
         }
         top += row.height;

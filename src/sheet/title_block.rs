@@ -7,7 +7,7 @@ use super::fit::{Fitted, Room, Slot, fit, heights_from};
 use super::projection_sign::projection_sign;
 use super::rulings::between_cells;
 use super::{Block, Extent, Job, Made, Misfit, Spot};
-use crate::geom::{Path, Point, Rect, Sheet, same};
+use crate::geom::{COINCIDENT, Path, Point, Rect, Sheet, same};
 use crate::ident::ItemId;
 use crate::scene::{Item, ItemKind, Mark, PlacedText, Stroke};
 use crate::style::TitleBlockSpec;
@@ -21,6 +21,7 @@ struct PlacedCell {
     entry_spot: Spot,
     /// Text height of the entry where it fits.
     text: f64,
+    centred: bool,
 }
 
 /// The title block of a sheet.
@@ -37,7 +38,7 @@ pub(super) fn title_block(job: &Job<'_>) -> Made {
     let mut misfits: Vec<Misfit> = own.shortage.into_iter().collect();
     let mut items = Vec::new();
     for cell in &cells {
-        let (name, cut_name) = cell.name(spec, &id);
+        let (name, cut_name) = cell.name(job, &id);
         marks.extend(name);
         misfits.extend(cut_name);
         match &cell.entry.text {
@@ -68,6 +69,7 @@ fn standing_cells<'a>(
             entry: entry(cell.key, job.drawing, job.facts, job.style, job.format),
             entry_spot: Spot::Field(cell.key),
             text: cell.text,
+            centred: cell.centred,
         }
     })
 }
@@ -86,14 +88,14 @@ impl OwnFields {
         let fields = &job.drawing.sheet.own_fields;
         let columns = spec.own_columns.max(1) as usize;
         let needed = fields.len().div_ceil(columns);
-        let most = ((block.min.y - job.frame.min.y) / spec.row).floor().max(0.0) as usize;
+        let most = ((block.min.y - job.frame.min.y) / spec.own_row).floor().max(0.0) as usize;
         let rows = needed.min(most);
-        let top = block.min.y - rows as f64 * spec.row;
+        let top = block.min.y - rows as f64 * spec.own_row;
         let area = Rect::new(Point::new(block.min.x, top), Point::new(block.max.x, block.min.y));
         let shown = fields.len().min(rows * columns);
 
         let cells = fields.iter().take(shown).enumerate().map(|(i, (name, text))| PlacedCell {
-            area: own_area(i, shown, columns, &area, spec.row),
+            area: own_area(i, shown, columns, &area, spec.own_row),
             name: name.clone(),
             name_spot: Spot::OwnName(i + 1),
             entry: Entry {
@@ -102,6 +104,7 @@ impl OwnFields {
             },
             entry_spot: Spot::OwnField(i + 1),
             text: spec.own_text,
+            centred: false,
         });
         let shortage = fields.get(shown).map(|(name, _)| Misfit {
             item: job.id("title-block"),
@@ -109,7 +112,7 @@ impl OwnFields {
             text: name.clone(),
             place: area,
             extent: Extent::Height,
-            needed: needed as f64 * spec.row,
+            needed: needed as f64 * spec.own_row,
             available: area.height(),
             span: Some(job.drawing.sheet.span),
         });
@@ -136,18 +139,17 @@ fn lines(
     area: &Rect<Sheet>,
 ) -> Vec<Mark> {
     let spec = &job.style.title_block;
-    let line = |a, b| Path::polyline(&[a, b], false);
-    let mut outer = vec![line(area.min, Point::new(area.max.x, area.min.y))];
+    let across = |left: Point<Sheet>| [left, Point::new(area.max.x, left.y)];
+    let mut outline = across(area.min).to_vec();
     if !same(area.min.x, job.frame.min.x) {
-        outer.push(line(area.min, Point::new(area.min.x, area.max.y)));
+        outline.insert(0, Point::new(area.min.x, area.max.y));
     }
+    let mut outer = vec![Path::polyline(&outline, false)];
     let mut inner = Vec::new();
-    let (own, standing): (Vec<_>, Vec<_>) = cells
-        .iter()
-        .map(|c| c.area)
-        .partition(|c| c.max.y <= block.min.y + crate::geom::COINCIDENT);
+    let (own, standing): (Vec<_>, Vec<_>) =
+        cells.iter().map(|c| c.area).partition(|c| c.max.y <= block.min.y + COINCIDENT);
     if !own.is_empty() {
-        outer.push(line(block.min, Point::new(block.max.x, block.min.y)));
+        outer.push(Path::polyline(&across(block.min), false));
         let strip = Rect::new(area.min, Point::new(area.max.x, block.min.y));
         inner.extend(between_cells(&own, &strip));
     }
@@ -159,23 +161,27 @@ fn lines(
 }
 
 impl PlacedCell {
-    /// The field name in the upper left corner.
-    fn name(&self, spec: &TitleBlockSpec, id: &ItemId) -> (Vec<Mark>, Option<Misfit>) {
+    /// The field name in the upper left corner; one with accents on its capitals stands lower, so
+    /// that they keep clear of the line above.
+    fn name(&self, job: &Job<'_>, id: &ItemId) -> (Vec<Mark>, Option<Misfit>) {
+        let spec = &job.style.title_block;
         let room = Room { width: self.text_width(spec), height: spec.name_text };
         let fitted = fit(&self.name, room, &[spec.name_text], spec.line_pitch);
-        let base = self.area.min.y + spec.name_top + spec.name_text;
+        let rise = fitted.lines.iter().map(|run| -run.ink.min.y).fold(0.0, f64::max);
+        let clear = spec.line / 2.0 + job.style.clearance.text_line;
+        let base = self.area.min.y + (spec.name_top + spec.name_text).max(clear + rise);
         let misfit = fitted.misfit(&self.slot(id, self.name_spot), &self.name);
         (self.set(&fitted, base, spec), misfit)
     }
 
-    /// The entry: on the common base line of a plain row, in the middle of a higher cell.
+    /// The entry: on its row's common base line, or in the middle of what the field
+    /// name leaves.
     fn entry(&self, text: &str, spec: &TitleBlockSpec, id: &ItemId) -> (Vec<Mark>, Option<Misfit>) {
         let height = self.area.height() - spec.entry_top - spec.base;
         let room = Room { width: self.text_width(spec), height };
         let heights = heights_from(self.text, &spec.heights);
         let fitted = fit(text, room, &heights, spec.line_pitch);
-        let is_plain = self.area.height() <= spec.row + crate::geom::COINCIDENT;
-        let lift = if is_plain { 0.0 } else { (height - fitted.used(spec)).max(0.0) / 2.0 };
+        let lift = if self.centred { (height - fitted.used()).max(0.0) / 2.0 } else { 0.0 };
         let misfit = fitted.misfit(&self.slot(id, self.entry_spot), text);
         (self.set(&fitted, self.area.max.y - spec.base - lift, spec), misfit)
     }
@@ -200,24 +206,16 @@ impl PlacedCell {
 
     /// The lines with the last one's base line at `base`.
     fn set(&self, fitted: &Fitted, base: f64, spec: &TitleBlockSpec) -> Vec<Mark> {
-        let pitch = fitted.height * spec.line_pitch;
         let left = self.area.min.x + spec.padding;
         let lines = fitted.lines.iter().rev().enumerate();
         let mut marks: Vec<Mark> = lines
             .map(|(up, run)| {
-                let origin = Point::new(left, base - up as f64 * pitch);
+                // Ink, not advance, starts at the padding: else large letters would seem indented.
+                let origin = Point::new(left - run.ink.min.x, base - up as f64 * fitted.pitch);
                 Mark::Text(PlacedText::new(run.clone(), origin, 0.0))
             })
             .collect();
         marks.reverse();
         marks
-    }
-}
-
-impl Fitted {
-    /// Top of the first capitals to the last base line, mm.
-    fn used(&self, spec: &TitleBlockSpec) -> f64 {
-        let steps = self.lines.len().saturating_sub(1) as f64;
-        self.height * (1.0 + steps * spec.line_pitch)
     }
 }

@@ -89,13 +89,12 @@ pub struct TitleBlockSpec {
     pub name_top: f64,
     /// Upper side of the cell to the highest place for the top of an entry's capitals.
     pub entry_top: f64,
-    /// Last base line of an entry to the lower side of its cell.
+    /// Last base line of an entry to the lower side of its cell; the least for centred ones.
     pub base: f64,
-    /// Base line to base line of an entry's lines, in text heights.
-    pub line_pitch: f64,
-    /// Height of a plain row: entries in it share one base line, those of higher cells are
-    /// centred. Also the height of a row of a company's own fields, on top of the block.
-    pub row: f64,
+    /// Base line to base line of an entry's lines.
+    pub line_pitch: LinePitch,
+    /// Height of a row of a company's own fields, on top of the block.
+    pub own_row: f64,
     /// Most own fields in a row.
     pub own_columns: u32,
     /// Text height of own fields.
@@ -106,6 +105,16 @@ pub struct TitleBlockSpec {
     pub sign: SignSpec,
     /// The cells.
     pub cell: Vec<Cell>,
+}
+
+/// Base line to base line, in text heights.
+#[derive(Clone, Copy, Debug, PartialEq, Deserialize)]
+#[serde(deny_unknown_fields)]
+pub struct LinePitch {
+    /// Of lines without accents on capitals.
+    pub plain: f64,
+    /// Where a line below another has accents on capitals.
+    pub accented: f64,
 }
 
 /// The projection sign as drawn in its cell.
@@ -138,6 +147,10 @@ pub struct Cell {
     pub height: f64,
     /// Text height of the entry where it fits.
     pub text: f64,
+    /// Whether the entry stands in the middle of the height below the field name, instead of on
+    /// the base line that it shares with its neighbours.
+    #[serde(default)]
+    pub centred: bool,
 }
 
 /// What a cell of the title block holds.
@@ -269,8 +282,8 @@ pub struct RevisionTableSpec {
     pub row: f64,
     /// Text height.
     pub text: f64,
-    /// Base line to base line of a row's lines, in text heights.
-    pub line_pitch: f64,
+    /// Base line to base line of a row's lines.
+    pub line_pitch: LinePitch,
     /// Distance of text from the cell's left and right sides.
     pub padding: f64,
     /// Width of the outer lines and of the one below the header.

@@ -15,8 +15,8 @@ mod sections;
 pub use builtin::{builtin, builtin_names, builtin_text};
 pub use cost::{Costs, GroupCosts, PairCosts, UnaryCosts};
 pub use format::{
-    Cell, CellKey, FormatSpec, FrameSpec, RevisionColumn, RevisionKey, RevisionTableSpec,
-    SheetSide, SignSpec, TitleBlockSpec, ZoneSpec,
+    Cell, CellKey, FormatSpec, FrameSpec, LinePitch, RevisionColumn, RevisionKey,
+    RevisionTableSpec, SheetSide, SignSpec, TitleBlockSpec, ZoneSpec,
 };
 pub use review::ReviewSpec;
 pub use sections::{

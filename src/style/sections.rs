@@ -4,7 +4,9 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, ReviewSpec, RevisionTableSpec, TitleBlockSpec};
+use super::{
+    Costs, FormatSpec, FrameSpec, LinePitch, ReviewSpec, RevisionTableSpec, TitleBlockSpec,
+};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -287,7 +289,7 @@ pub struct SheetLook {
     /// Height of the notes.
     pub text_h: f64,
     /// Base line to base line.
-    pub pitch_h: f64,
+    pub line_pitch: LinePitch,
     /// Blank between a note's number and its text.
     pub indent_h: f64,
     /// Widest column.

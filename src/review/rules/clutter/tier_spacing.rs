@@ -126,7 +126,8 @@ fn uneven<'l, 'a: 'l>(
     found.report(page, &items, area, message).measured(most.size / least.size, Unit::Ratio);
 }
 
-/// Each line's distance to the next tier that faces it.
+/// For each line and the next one that faces it, the last step from tier to tier between them: a
+/// tier taken by a third line further along the side is a step of the same ladder.
 fn pitches<'l, 'a>(page: &Page<'a>, lines: &[&'l DimensionLine<'a>]) -> Vec<Pitch<'l, 'a>> {
     let place = page.limits().same_place;
     let mut pitches = Vec::new();
@@ -134,7 +135,12 @@ fn pitches<'l, 'a>(page: &Page<'a>, lines: &[&'l DimensionLine<'a>]) -> Vec<Pitc
         let mut next = lines[i + 1..].iter();
         let outer = next.find(|o| o.run.offset - inner.run.offset > place && faces(page, inner, o));
         if let Some(outer) = outer {
-            pitches.push(Pitch { size: outer.run.offset - inner.run.offset, inner, outer });
+            let before = lines[i..]
+                .iter()
+                .map(|l| l.run.offset)
+                .filter(|o| outer.run.offset - o > place)
+                .fold(inner.run.offset, f64::max);
+            pitches.push(Pitch { size: outer.run.offset - before, inner, outer });
         }
     }
     pitches
