@@ -43,7 +43,7 @@ struct Head<'p> {
 fn check(page: &Page<'_>, found: &mut Findings) {
     for of_item in page.ink.pieces().chunk_by(|a, b| a.item == b.item) {
         if of_item[0].kind == ItemKind::Dimension {
-            let heads: Vec<_> = of_item.iter().filter_map(|p| head(p)).collect();
+            let heads: Vec<_> = of_item.iter().filter_map(head).collect();
             if let [a, b] = heads.as_slice() {
                 do_not_fit(page, a, b, found);
             }
