@@ -46,7 +46,9 @@ fn check(page: &Page<'_>, found: &mut Findings) {
             let nested = parts.and_then(|(a, b)| a.intersection(&b));
             let meets = gap <= 0.0 || nested.is_some();
             if meets || gap < least - page.limits().overlap_depth {
-                let place = nested.unwrap_or(area);
+                // Which of many meetings is met first depends on the order of items: take them all.
+                let common = nested.or_else(|| all.intersection(other_all));
+                let place = if meets { common.unwrap_or(area) } else { area };
                 report(page, (id, other_id), if meets { 0.0 } else { gap }, place, found);
             }
         }
