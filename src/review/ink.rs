@@ -53,7 +53,7 @@ pub(crate) struct Piece {
     /// Whether it is a whole straight curve, not a chord of a round one.
     pub(crate) straight: bool,
     /// Number of the curve that it is a chord of; another one for every other piece.
-    curve: usize,
+    pub(crate) curve: usize,
     /// Beginning and end of the open path that it belongs to.
     pub(crate) ends: Option<(Point<Sheet>, Point<Sheet>)>,
 }

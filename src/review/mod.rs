@@ -18,6 +18,7 @@ mod intrusion;
 mod leader;
 mod naming;
 mod page;
+mod place;
 mod registry;
 pub mod report;
 mod rule;

@@ -2,17 +2,17 @@
 
 use std::collections::BTreeMap;
 
-use crate::geom::{Rect, Sheet};
 use crate::review::Unit;
 use crate::review::findings::Findings;
 use crate::review::ink::{Class, Piece};
 use crate::review::naming::{ink_words, kind_words, quoted};
 use crate::review::page::{Page, is_furniture};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 use crate::review::shape::{Polygon, Shape};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
-use crate::scene::ItemKind;
+use crate::scene::{ItemKind, PlacedText};
 
 rule! {
     /// ## What it checks
@@ -48,7 +48,7 @@ struct Pair<'p> {
 
 struct Near<'p> {
     text: &'p Piece,
-    words: String,
+    placed: &'p PlacedText,
     other: &'p Piece,
     gap: f64,
     shortfall: f64,
@@ -75,8 +75,7 @@ fn near_texts(page: &Page<'_>, found: &mut Findings) {
             pair.overlaps |= page.overlap(text, other);
             let shortfall = clearance - gap;
             if pair.worst.as_ref().is_none_or(|w| is_worse(text, other, shortfall, w)) {
-                let words = quoted(placed);
-                pair.worst = Some(Near { text, words, other, gap, shortfall });
+                pair.worst = Some(Near { text, placed, other, gap, shortfall });
             }
         }
     }
@@ -86,30 +85,25 @@ fn near_texts(page: &Page<'_>, found: &mut Findings) {
 
 /// Worse by distance, then by place: the order of items decides nothing.
 fn is_worse(text: &Piece, other: &Piece, shortfall: f64, than: &Near<'_>) -> bool {
-    let place = |t: &Piece, o: &Piece| {
-        [t.bounds.min.y, t.bounds.min.x, o.bounds.min.y, o.bounds.min.x, o.bounds.max.y]
-    };
-    let (new, old) = (place(text, other), place(than.text, than.other));
-    let by_place = || new.iter().zip(&old).map(|(a, b)| a.total_cmp(b)).find(|o| o.is_ne());
-    match shortfall.total_cmp(&than.shortfall) {
-        std::cmp::Ordering::Greater => true,
-        std::cmp::Ordering::Less => false,
-        std::cmp::Ordering::Equal => by_place().is_some_and(std::cmp::Ordering::is_lt),
-    }
+    let by_distance = than.shortfall.total_cmp(&shortfall);
+    by_distance
+        .then_with(|| place::order(&text.bounds, &than.text.bounds))
+        .then_with(|| place::order(&other.bounds, &than.other.bounds))
+        .is_lt()
 }
 
 fn report(page: &Page<'_>, near: &Near<'_>, found: &mut Findings) {
     let (of_text, of_other) = (page.item(near.text), page.item(near.other));
     let message = format!(
         "the text {} of {} stands {:.2} mm from {} of {}; the style wants {:.2} mm",
-        near.words,
+        quoted(near.placed),
         of_text.id,
         near.gap,
         ink_words(near.other),
         of_other.id,
         near.gap + near.shortfall,
     );
-    let area = between(&near.text.bounds, &near.other.bounds);
+    let area = place::between(&near.text.bounds, &near.other.bounds);
     found.report(page, &[of_text, of_other], area, message).measured(near.gap, Unit::Millimetre);
 }
 
@@ -126,14 +120,6 @@ fn clearance(page: &Page<'_>, text: &Piece, other: &Piece) -> Option<f64> {
         (Class::Line, ItemKind::Outline) => Some(c.text_outline),
         (Class::Line, _) => Some(c.text_line),
     }
-}
-
-/// The gap between two boxes as a box; their common part where they overlap.
-fn between(a: &Rect<Sheet>, b: &Rect<Sheet>) -> Rect<Sheet> {
-    let span = |a0: f64, a1: f64, b0: f64, b1: f64| (a0.max(b0), a1.min(b1));
-    let (x0, x1) = span(a.min.x, a.max.x, b.min.x, b.max.x);
-    let (y0, y1) = span(a.min.y, a.max.y, b.min.y, b.max.y);
-    Rect::from_sides(x0, y0, x1, y1)
 }
 
 fn near_furniture(page: &Page<'_>, found: &mut Findings) {
@@ -166,7 +152,8 @@ fn near_furniture(page: &Page<'_>, found: &mut Findings) {
         for piece in page.ink.near(b.grown(least)).filter(|p| !is_furniture(page.item(p))) {
             let gap = within.gap(&piece.shape) - within.depth(&piece.shape);
             let entry = nearest.entry(piece.item).or_insert((gap, piece));
-            if gap < entry.0 {
+            let nearer = gap.total_cmp(&entry.0);
+            if nearer.then_with(|| place::order(&piece.bounds, &entry.1.bounds)).is_lt() {
                 *entry = (gap, piece);
             }
         }
@@ -183,7 +170,7 @@ fn near_furniture(page: &Page<'_>, found: &mut Findings) {
                 kind_words(block.kind),
             );
             found
-                .report(page, &[item, block], between(&piece.bounds, &b), message)
+                .report(page, &[item, block], place::between(&piece.bounds, &b), message)
                 .measured(gap.max(0.0), Unit::Millimetre);
         }
     }

@@ -5,6 +5,7 @@ use crate::ident::ViewId;
 use crate::review::findings::Findings;
 use crate::review::ink::Piece;
 use crate::review::page::{Page, ViewInk};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
@@ -100,8 +101,8 @@ fn nearest(
                 // Ink that only touches is as near as can be, and does not run into the other.
                 piece.shape.gap(&foe.shape).max(f64::MIN_POSITIVE)
             };
-            let area = between(&piece.bounds, &foe.bounds);
-            if gap < best.0 || gap == best.0 && is_above(&area, &best.1) {
+            let area = place::between(&piece.bounds, &foe.bounds);
+            if gap < best.0 || gap == best.0 && place::order(&area, &best.1).is_lt() {
                 best = (gap, area);
             }
         }
@@ -110,19 +111,6 @@ fn nearest(
         }
     }
     best
-}
-
-fn is_above(a: &Rect<Sheet>, b: &Rect<Sheet>) -> bool {
-    (a.min.y, a.min.x, a.max.y, a.max.x) < (b.min.y, b.min.x, b.max.y, b.max.x)
-}
-
-fn between(a: &Rect<Sheet>, b: &Rect<Sheet>) -> Rect<Sheet> {
-    Rect::from_sides(
-        a.min.x.max(b.min.x),
-        a.min.y.max(b.min.y),
-        a.max.x.min(b.max.x),
-        a.max.y.min(b.max.y),
-    )
 }
 
 #[cfg(test)]
