@@ -4,7 +4,7 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, ReviewSpec, TableSpec, TitleBlockSpec};
+use super::{Costs, FormatSpec, FrameSpec, TableSpec, TitleBlockSpec};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -51,7 +51,7 @@ pub struct Style {
     /// Fixed words.
     pub words: WordSpec,
     /// Limits that only checking needs.
-    pub review: ReviewSpec,
+    pub review: super::ReviewSpec,
     /// What a placement costs.
     pub cost: Costs,
 }
