@@ -15,8 +15,9 @@ mod sections;
 pub use builtin::{builtin, builtin_names, builtin_text};
 pub use cost::{Costs, GroupCosts, PairCosts, UnaryCosts};
 pub use format::{Cell, CellText, FormatSpec, FrameSpec, TableSpec, TitleBlockSpec, ZoneSpec};
-pub use review::ReviewSpec;
 pub use sections::{
     ArrowSpec, CentreSpec, ClearanceSpec, DashSet, DashSpec, DimensionSpec, Group, HatchSpec,
     LeaderSpec, NumberSpec, Projection, SheetLook, Style, ToleranceLook, ViewSpacing, WordSpec,
 };
+
+pub use review::ReviewSpec;
