@@ -28,7 +28,8 @@ rule! {
     /// ## Source
     /// ISO 129-1: arrows go outside where space is short. The length is common practice
     /// (`dimension.inside_arrows`).
-    ARROW_CROWDED = "clutter/arrow-crowded", Should, worse: Less, "arrowheads overlap or do not fit";
+    ARROW_CROWDED = "clutter/arrow-crowded", Should, worse: Less,
+        "arrowheads overlap or do not fit";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -28,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice: 10 mm; the distance is the style's (`first_line`).
-    FIRST_TIER_CLOSE = "clutter/first-tier-close", Should, worse: Less, "the first dimension line stands too near the outline";
+    FIRST_TIER_CLOSE = "clutter/first-tier-close", Should, worse: Less,
+        "the first dimension line stands too near the outline";
     check: Check::Page(check);
     examples: bad, good;
 }

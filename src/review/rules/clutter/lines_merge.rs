@@ -31,7 +31,8 @@ rule! {
     /// ## Source
     /// ISO 128-2: at least 0,7 mm between parallel lines; twice the wide line: common practice
     /// (`clearance.lines`).
-    LINES_MERGE = "clutter/lines-merge", Should, worse: Less, "parallel edges are too close to be told apart";
+    LINES_MERGE = "clutter/lines-merge", Should, worse: Less,
+        "parallel edges are too close to be told apart";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -12,7 +12,7 @@ use crate::review::rule::{Check, rule};
 use crate::review::shape::{Polygon, Shape};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
-use crate::scene::{ItemKind, PlacedText};
+use crate::scene::{Item, ItemKind, PlacedText};
 
 rule! {
     /// ## What it checks
@@ -34,7 +34,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice; the distances are those of the style (`clearance`).
-    TOO_CLOSE = "clutter/too-close", Should, worse: Less, "ink stands closer than the style's clearance";
+    TOO_CLOSE = "clutter/too-close", Should, worse: Less,
+        "ink stands closer than the style's clearance";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -123,56 +124,58 @@ fn clearance(page: &Page<'_>, text: &Piece, other: &Piece) -> Option<f64> {
 }
 
 fn near_furniture(page: &Page<'_>, found: &mut Findings) {
-    let least = page.style.clearance.frame;
+    let items = &page.scene.items;
+    for item in items.iter().filter(|i| !is_furniture(i)) {
+        near_frame(page, item, found);
+    }
+    let is_block = |i: &&Item| matches!(i.kind, ItemKind::TitleBlock | ItemKind::Table);
+    for block in items.iter().filter(is_block) {
+        near_block(page, block, found);
+    }
+}
+
+fn near_frame(page: &Page<'_>, item: &Item, found: &mut Findings) {
+    let Some(b) = item.bounds() else { return };
+    let (least, slack) = (page.style.clearance.frame, page.limits().overlap_depth);
     let inner = page.frame.grown(-page.style.frame.line / 2.0);
-    for item in page.scene.items.iter().filter(|i| !is_furniture(i)) {
-        let Some(b) = item.bounds() else { continue };
-        let gap = [
-            b.min.x - inner.min.x,
-            b.min.y - inner.min.y,
-            inner.max.x - b.max.x,
-            inner.max.y - b.max.y,
-        ]
-        .into_iter()
-        .fold(f64::INFINITY, f64::min);
-        let touches_only = gap >= -page.limits().overlap_depth;
-        if touches_only && gap < least - page.limits().overlap_depth {
-            let message = format!(
-                "{} stands {gap:.2} mm from the frame; the style wants {least:.2} mm",
-                item.id
-            );
-            found.report(page, &[item], b, message).measured(gap.max(0.0), Unit::Millimetre);
+    let level = (b.min.x - inner.min.x).min(inner.max.x - b.max.x);
+    let upright = (b.min.y - inner.min.y).min(inner.max.y - b.max.y);
+    let gap = level.min(upright);
+    // Ink that reaches onto the frame is a fault of its own.
+    if gap >= -slack && gap < least - slack {
+        let gap = gap.max(0.0);
+        let message = format!(
+            "{} stands {gap:.2} mm from the frame; the style wants {least:.2} mm",
+            item.id,
+        );
+        found.report(page, &[item], b, message).measured(gap, Unit::Millimetre);
+    }
+}
+
+fn near_block(page: &Page<'_>, block: &Item, found: &mut Findings) {
+    let Some(b) = block.bounds() else { return };
+    let (least, slack) = (page.style.clearance.frame, page.limits().overlap_depth);
+    let within = Shape::Area(Polygon::new(b.corners().to_vec()));
+    // Clear distance of each item, less than 0 where it stands on the block.
+    let mut nearest: BTreeMap<usize, (f64, &Piece)> = BTreeMap::new();
+    for piece in page.ink.near(b.grown(least)).filter(|p| !is_furniture(page.item(p))) {
+        let gap = within.gap(&piece.shape) - within.depth(&piece.shape);
+        let entry = nearest.entry(piece.item).or_insert((gap, piece));
+        let nearer = gap.total_cmp(&entry.0);
+        if nearer.then_with(|| place::order(&piece.bounds, &entry.1.bounds)).is_lt() {
+            *entry = (gap, piece);
         }
     }
-    let blocks = page.scene.items.iter();
-    for block in blocks.filter(|i| matches!(i.kind, ItemKind::TitleBlock | ItemKind::Table)) {
-        let Some(b) = block.bounds() else { continue };
-        let within = Shape::Area(Polygon::new(b.corners().to_vec()));
-        let mut nearest: BTreeMap<usize, (f64, &Piece)> = BTreeMap::new();
-        for piece in page.ink.near(b.grown(least)).filter(|p| !is_furniture(page.item(p))) {
-            let gap = within.gap(&piece.shape) - within.depth(&piece.shape);
-            let entry = nearest.entry(piece.item).or_insert((gap, piece));
-            let nearer = gap.total_cmp(&entry.0);
-            if nearer.then_with(|| place::order(&piece.bounds, &entry.1.bounds)).is_lt() {
-                *entry = (gap, piece);
-            }
-        }
-        for (gap, piece) in nearest.into_values() {
-            let slack = page.limits().overlap_depth;
-            if gap < -slack || gap >= least - slack {
-                continue;
-            }
-            let item = page.item(piece);
-            let message = format!(
-                "{} stands {:.2} mm from {}; the style wants {least:.2} mm",
-                item.id,
-                gap.max(0.0),
-                kind_words(block.kind),
-            );
-            found
-                .report(page, &[item, block], place::between(&piece.bounds, &b), message)
-                .measured(gap.max(0.0), Unit::Millimetre);
-        }
+    for (gap, piece) in nearest.into_values().filter(|(g, _)| *g >= -slack && *g < least - slack) {
+        let (item, gap) = (page.item(piece), gap.max(0.0));
+        let message = format!(
+            "{} stands {gap:.2} mm from {}; the style wants {least:.2} mm",
+            item.id,
+            kind_words(block.kind),
+        );
+        found
+            .report(page, &[item, block], place::between(&piece.bounds, &b), message)
+            .measured(gap, Unit::Millimetre);
     }
 }
 

@@ -29,7 +29,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice; the distance is the style's (`clearance.view_view`).
-    VIEW_TOO_CLOSE = "clutter/view-too-close", Should, worse: Less, "views stand closer than their annotations need";
+    VIEW_TOO_CLOSE = "clutter/view-too-close", Should, worse: Less,
+        "views stand closer than their annotations need";
     check: Check::Page(check);
     examples: bad, good;
 }
