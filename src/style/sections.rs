@@ -53,7 +53,7 @@ pub struct Style {
     /// Fixed words.
     pub words: WordSpec,
     /// Limits that only checking needs.
-    pub review: ReviewSpec,
+    pub review: super::ReviewSpec,
     /// What a placement costs.
     pub cost: Costs,
 }

@@ -31,7 +31,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1 leaves the distances open; common practice is 7 mm to 10 mm.
-    TIER_SPACING = "clutter/tier-spacing", Should, worse: Less, "dimension lines too close or unevenly spaced";
+    TIER_SPACING = "clutter/tier-spacing", Should, worse: Less,
+        "dimension lines too close or unevenly spaced";
     check: Check::Page(check);
     examples: bad, good;
 }
