@@ -67,7 +67,10 @@ fn texts_and_lines<S: Space>(
     let mut cost = 0.0;
     for (quad, text_box) in &texts.texts {
         for l in &lines.lines {
-            let reach = clear + l.half_width;
+            let reach = match l.kind {
+                InkKind::Arrow => practice.style.clearance.text_arrow + l.half_width,
+                InkKind::Dim | InkKind::Ext | InkKind::Leader => clear,
+            };
             if text_box.distance(&l.bounds) >= roomy.max(reach) {
                 continue;
             }

@@ -244,7 +244,7 @@ impl<'a> Desk<'a> {
 
     /// A quick look before anything is placed: no view may be larger than the frame.
     fn outlines_fit(&self, scale: Scale, frame: &Rect<Sheet>) -> Result<(), Shortage> {
-        let inner = frame.grown(-self.practice.style.views.frame_gap);
+        let inner = frame.grown(-self.practice.style.views.frame_gap_least);
         for view in self.views {
             let k = view.scale.unwrap_or(scale).factor();
             let needed = (view.bounds.width() * k, view.bounds.height() * k);

@@ -23,5 +23,3 @@ pub use sections::{
     ArrowSpec, CentreSpec, ClearanceSpec, DashSet, DashSpec, DimensionSpec, Group, HatchSpec,
     LeaderSpec, NumberSpec, Projection, SheetLook, Style, ToleranceLook, ViewSpacing, WordSpec,
 };
-
-pub use review::ReviewSpec;
