@@ -10,7 +10,7 @@ use crate::spec::{Pin, Side};
 /// All candidates of `size` that the pin allows.
 pub(super) fn candidates(size: &LinearSize, pin: &Pin, ground: &Ground<'_>) -> Vec<Candidate> {
     let axes = Axes::new(size.along);
-    let member = axes.member(size, &ground.on, &ground.practice);
+    let member = axes.member(size, ground);
     let spots = spots(&member, pin, ground);
     let mut all = Vec::new();
     for sign in [1.0, -1.0] {

@@ -8,10 +8,13 @@ use std::sync::Arc;
 
 use super::Practice;
 use super::annotation::{Hold, LinearSize};
+use super::candidate::Ground;
 use super::label::{Label, PlacedLabel};
 use super::sketch::Sketch;
-use crate::geom::{Paper, Placement, Point, Rect, Vector};
+use crate::geom::{COINCIDENT, Curve, Paper, Placement, Point, Rect, Vector};
 use crate::scene::Role;
+use crate::spec::LineClass;
+use crate::view::PaperView;
 
 /// The frame of a linear dimension on paper.
 #[derive(Clone, Copy, Debug)]
@@ -33,6 +36,9 @@ pub(super) struct Station {
     pub high: f64,
     /// How far a centre line already reaches past the stretch.
     pub reach: f64,
+    /// Least and greatest place across of what is drawn on the extension line's own line: the
+    /// stretch itself and outlines in its prolongation.
+    pub drawn: (f64, f64),
 }
 
 /// Where the text of a dimension stands.
@@ -99,6 +105,24 @@ impl Axes {
         bounds(r.corners().map(|p| self.across(p)))
     }
 
+    /// The station with the outlines in its prolongation: an extension line begins where the last
+    /// of them ends, instead of running over them and through the view.
+    fn prolonged(&self, mut station: Station, view: &PaperView) -> Station {
+        for edge in &view.edges {
+            let Curve::Line(l) = &edge.curve else { continue };
+            if !matches!(edge.class, LineClass::Visible | LineClass::Cut) {
+                continue;
+            }
+            let on_it = |p| (self.position(p) - station.t).abs() <= COINCIDENT;
+            if on_it(l.from) && on_it(l.to) {
+                let (a, b) = (self.across(l.from), self.across(l.to));
+                station.drawn.0 = station.drawn.0.min(a.min(b));
+                station.drawn.1 = station.drawn.1.max(a.max(b));
+            }
+        }
+        station
+    }
+
     fn station(&self, hold: &Hold, on: &Placement, overshoot: f64) -> Station {
         let at = |p| {
             let p = on.point(p);
@@ -107,25 +131,31 @@ impl Axes {
         match *hold {
             Hold::Point(p) => {
                 let (t, n) = at(p);
-                Station { t, low: n, high: n, reach: 0.0 }
+                Station { t, low: n, high: n, reach: 0.0, drawn: (n, n) }
             }
             Hold::Centre(p, radius) => {
                 let (t, n) = at(p);
-                Station { t, low: n, high: n, reach: on.length(radius) + overshoot }
+                Station { t, low: n, high: n, reach: on.length(radius) + overshoot, drawn: (n, n) }
             }
             Hold::Edge(l) | Hold::Axis(l) => {
                 let ((t, a), (_, b)) = (at(l.from), at(l.to));
                 let reach = if matches!(hold, Hold::Axis(_)) { overshoot } else { 0.0 };
-                Station { t, low: a.min(b), high: a.max(b), reach }
+                let (low, high) = (a.min(b), a.max(b));
+                Station { t, low, high, reach, drawn: (low, high) }
             }
         }
     }
 
     /// The dimension `size` in this frame.
-    pub(super) fn member(&self, size: &LinearSize, on: &Placement, p: &Practice<'_>) -> Member {
-        let overshoot = p.style.centre.overshoot;
-        let (a, b) =
-            (self.station(&size.from, on, overshoot), self.station(&size.to, on, overshoot));
+    pub(super) fn member(&self, size: &LinearSize, ground: &Ground<'_>) -> Member {
+        let overshoot = ground.practice.style.centre.overshoot;
+        let [a, b] = [&size.from, &size.to].map(|hold| {
+            let station = self.station(hold, &ground.on, overshoot);
+            match hold {
+                Hold::Point(_) | Hold::Edge(_) => self.prolonged(station, ground.view),
+                Hold::Centre(..) | Hold::Axis(_) => station,
+            }
+        });
         let (first, second) = if a.t <= b.t { (a, b) } else { (b, a) };
         Member { first, second, label: size.label.clone() }
     }
@@ -231,10 +261,14 @@ pub(super) fn extension(
 ) {
     let look = &p.style.dimension;
     let gap = station.reach.max(look.extension_gap);
+    // Where the dimension line lies among the outlines in prolongation, the own end counts.
+    let begin = |outer: f64, own: f64, reaches: bool| if reaches { outer } else { own };
     let (from, to) = if level > station.high + gap {
-        (station.high + gap, level + look.overshoot)
+        let high = begin(station.drawn.1, station.high, level > station.drawn.1 + gap);
+        (high + gap, level + look.overshoot)
     } else if level < station.low - gap {
-        (station.low - gap, level - look.overshoot)
+        let low = begin(station.drawn.0, station.low, level < station.drawn.0 - gap);
+        (low - gap, level - look.overshoot)
     } else {
         return;
     };

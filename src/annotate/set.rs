@@ -11,8 +11,7 @@ use crate::spec::Pin;
 pub(super) fn chain(links: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> Vec<Candidate> {
     let Some(first) = links.first() else { return Vec::new() };
     let axes = Axes::new(first.along);
-    let mut members: Vec<Member> =
-        links.iter().map(|l| axes.member(l, &ground.on, &ground.practice)).collect();
+    let mut members: Vec<Member> = links.iter().map(|l| axes.member(l, ground)).collect();
     members.sort_by(|a, b| a.first.t.total_cmp(&b.first.t));
     let (placed, text_cost) = link_spots(&members, ground);
     let mut all = Vec::new();
@@ -38,8 +37,7 @@ pub(super) fn chain(links: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> Vec
 pub(super) fn baseline(sizes: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> Vec<Candidate> {
     let Some(first) = sizes.first() else { return Vec::new() };
     let axes = Axes::new(first.along);
-    let members: Vec<Member> =
-        sizes.iter().map(|l| axes.member(l, &ground.on, &ground.practice)).collect();
+    let members: Vec<Member> = sizes.iter().map(|l| axes.member(l, ground)).collect();
     let count = u8::try_from(members.len()).unwrap_or(u8::MAX);
     let mut all = Vec::new();
     for (side, sign) in sides(&axes, pin) {
@@ -133,6 +131,8 @@ fn stations(members: &[Member]) -> Vec<super::member::Station> {
                 last.low = last.low.min(station.low);
                 last.high = last.high.max(station.high);
                 last.reach = last.reach.max(station.reach);
+                last.drawn.0 = last.drawn.0.min(station.drawn.0);
+                last.drawn.1 = last.drawn.1.max(station.drawn.1);
             }
             _ => all.push(station),
         }

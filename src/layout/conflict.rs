@@ -2,7 +2,9 @@
 
 use super::ink::{Choice, Ink, InkKind, InkLine, whole};
 use crate::annotate::{Practice, Seat};
-use crate::geom::{Crossing, Line, Quad, Rect, Space, line_crossing, overlap_length};
+use crate::geom::{
+    Crossing, Line, Quad, Rect, Space, distance_line_line, line_crossing, overlap_length,
+};
 use crate::spec::Side;
 use crate::style::PairCosts;
 
@@ -132,6 +134,11 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
         return pair.dim_near;
     }
     if both_leaders {
+        let (a, b) = (&p.line, &q.line);
+        if distance_line_line(a.from, a.to, b.from, b.to) < LEADERS_APART / 2.0 {
+            // One that touches another's elbow reads like one that crosses it.
+            return pair.leader_leader;
+        }
         return near_parallel(&p.line, &q.line)
             * practice.style.cost.group.leaders_near_parallel_per_mm;
     }
