@@ -99,6 +99,6 @@ fn across(
     sketch.line(far, elbow, Role::Dim);
     sketch.heads.push(ground.practice.head(near, out));
     sketch.heads.push(ground.practice.head(far, -out));
-    land(&mut sketch, elbow, out.x >= 0.0, label, ground);
+    land(&mut sketch, elbow, (out.x >= 0.0, Role::Dim), label, ground);
     sketch
 }

@@ -98,15 +98,16 @@ pub(super) fn draw(
     let elbow = tip + out * length;
     sketch.line(tip, elbow, Role::Leader);
     sketch.heads.push(p.head(tip, -out));
-    land(&mut sketch, elbow, out.x >= 0.0, label, ground);
+    land(&mut sketch, elbow, (out.x >= 0.0, Role::Leader), label, ground);
     sketch
 }
 
-/// Draws the landing from `elbow` to the right or left, and the text on it.
+/// Draws the landing from `elbow` to the right or left, as part of a line with this role, and the
+/// text on it.
 pub(super) fn land(
     sketch: &mut Sketch<Paper>,
     elbow: Point<Paper>,
-    rightwards: bool,
+    (rightwards, role): (bool, Role),
     label: &Arc<Label>,
     ground: &Ground<'_>,
 ) {
@@ -115,7 +116,7 @@ pub(super) fn land(
     let whole = label.ink();
     let width = first.max.x.max(0.0) + look.landing_spare;
     let far = Vector::new(if rightwards { width } else { -width }, 0.0);
-    sketch.line(elbow, elbow + far, Role::Leader);
+    sketch.line(elbow, elbow + far, role);
     let x = if rightwards { elbow.x } else { elbow.x - width };
     // Lines below the first may be wider than it; leftwards they must end at the elbow too.
     let spill = if rightwards { 0.0 } else { (whole.max.x - width).max(0.0) };
@@ -126,7 +127,7 @@ pub(super) fn land(
         angle: 0.0,
     });
     if spill > 0.0 {
-        sketch.line(elbow + far, elbow + far - Vector::new(spill, 0.0), Role::Leader);
+        sketch.line(elbow + far, elbow + far - Vector::new(spill, 0.0), role);
     }
 }
 

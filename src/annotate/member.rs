@@ -237,11 +237,16 @@ impl Member {
         };
         sketch.line(axes.point(line.0, level), axes.point(line.1, level), Role::Dim);
         let mut lift = p.style.dimension.text_lift + self.label.ink().max.y.max(0.0);
+        let mut text_at = text_at;
         if spot == Spot::Lifted {
-            let middle = (t0 + t1) / 2.0;
-            let stem = p.group.text + p.style.dimension.text_lift;
-            sketch.line(axes.point(middle, level), axes.point(middle, level + stem), Role::Leader);
-            lift += stem;
+            // The stem leans at 60°, so that it is no upright leader, and the text stands on it.
+            let middle = f64::midpoint(t0, t1);
+            let rise = p.group.text + p.style.dimension.text_lift;
+            let lean = rise / 3f64.sqrt();
+            let foot = axes.point(middle, level);
+            sketch.line(foot, axes.point(middle + lean, level + rise), Role::Leader);
+            lift += rise;
+            text_at += lean;
         }
         sketch.labels.push(PlacedLabel {
             label: self.label.clone(),

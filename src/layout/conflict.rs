@@ -133,6 +133,10 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
     if both_dims && neighbours(&p.line, &q.line, practice.group.least_pitch) {
         return pair.dim_near;
     }
+    let both_extensions = p.kind == InkKind::Ext && q.kind == InkKind::Ext;
+    if both_extensions && side_by_side(&p.line, &q.line) {
+        return practice.style.cost.group.extensions_close;
+    }
     if both_leaders {
         let (a, b) = (&p.line, &q.line);
         if distance_line_line(a.from, a.to, b.from, b.to) < LEADERS_APART / 2.0 {
@@ -169,6 +173,16 @@ fn neighbours<S: Space>(a: &Line<S>, b: &Line<S>, pitch: f64) -> bool {
     }
     let apart = (b.from - a.from).cross(u).abs();
     apart > ON_ONE_ANOTHER && apart < pitch - 1e-6 && overlap_length(a, b) > NEIGHBOUR_STRETCH
+}
+
+/// Whether two lines run beside each other so near that they look like one or like a mistake.
+fn side_by_side<S: Space>(a: &Line<S>, b: &Line<S>) -> bool {
+    let (Some(u), Some(v)) = (a.vector().unit(), b.vector().unit()) else { return false };
+    let apart = (b.from - a.from).cross(u).abs();
+    u.cross(v).abs() < 1e-3
+        && apart > crate::geom::COINCIDENT
+        && apart < LEADERS_APART
+        && overlap_length(a, b) > NEIGHBOUR_STRETCH
 }
 
 /// Common stretch, mm, of two leaders that run almost parallel and close together.

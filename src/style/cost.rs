@@ -85,6 +85,7 @@ pub struct GroupCosts {
     pub callouts_misaligned: f64,
     pub leaders_near_parallel_per_mm: f64,
     pub texts_crowded: f64,
+    pub extensions_close: f64,
     pub text_and_line_crowded: f64,
     pub order_of_tiers: f64,
 }
