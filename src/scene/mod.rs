@@ -21,4 +21,4 @@ pub use item::{
     filled, straight,
 };
 pub use listing::listing;
-pub use read::{ReadError, read_svg};
+pub use read::{FilePlace, ReadError, SHEET_NAMESPACE, read_svg};

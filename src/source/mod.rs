@@ -5,8 +5,10 @@
 //! only takes; [`render`](render::render) turns them into text and nothing else does.
 
 mod diagnostic;
+mod nearest;
 pub mod render;
 mod world;
 
 pub use diagnostic::{Diagnostic, Diagnostics, Level};
+pub use nearest::nearest;
 pub use world::{Disk, FileId, Source, SourceMap, Span, World, WorldError};

@@ -113,8 +113,9 @@ pub struct Text {
 pub enum TextPiece {
     /// Letters as written.
     Literal(String),
-    /// The value of an expression in braces: mm for a length (the sheet's unit is applied when it
-    /// is drawn), degrees for an angle, otherwise a plain number.
+    /// The value of an expression in braces as the reader sees it: a length in the **drawing's
+    /// unit** (not converted to mm), an angle in degrees, otherwise a plain number. The style
+    /// formats it.
     Number(f64),
 }
 
@@ -220,7 +221,7 @@ pub struct Shape {
     pub id: ShapeId,
     /// Where its table stands.
     pub span: Span,
-    /// How its outline is drawn.
+    /// How its outline is drawn; `Cut` for a hatched shape that says nothing else.
     pub class: LineClass,
     /// Its outline.
     pub outline: Outline,
@@ -311,7 +312,8 @@ pub enum Outline {
     },
     /// SVG path data with y **up**; arcs stay arcs.
     Path {
-        /// The data, as written.
+        /// The data with its braces computed and, in an inch drawing, its lengths converted to mm;
+        /// the span is that of the whole text, in which places of `value` cannot be counted.
         data: Spanned<String>,
     },
 }
@@ -391,9 +393,10 @@ pub struct AnnotationSpec {
 pub enum Says {
     /// One dimension.
     Dimension(Measure, Form),
-    /// Dimensions end to end on one line.
+    /// Dimensions end to end on one line; one form for each, so one less than anchors.
     Chain(Vec<AnchorRef>, LineDirection, Vec<Form>),
-    /// Dimensions from the first anchor to each of the others, stacked.
+    /// Dimensions from the first anchor to each of the others, stacked; one form for each, so one
+    /// less than anchors.
     Baseline(Vec<AnchorRef>, LineDirection, Vec<Form>),
     /// A hole callout at a circle or a group of circles.
     Hole(AnchorRef, Box<HoleNote>),

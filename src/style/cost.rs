@@ -50,6 +50,7 @@ pub struct UnaryCosts {
     pub text_on_centre: f64,
     pub text_on_hatch: f64,
     pub text_inside_view: f64,
+    pub dim_inside_view: f64,
     pub outside_frame: f64,
     pub on_block: f64,
     pub in_other_view: f64,
@@ -83,5 +84,7 @@ pub struct UnaryCosts {
 pub struct GroupCosts {
     pub callouts_misaligned: f64,
     pub leaders_near_parallel_per_mm: f64,
+    pub texts_crowded: f64,
+    pub text_and_line_crowded: f64,
     pub order_of_tiers: f64,
 }

@@ -9,6 +9,7 @@ mod builtin;
 mod cost;
 mod format;
 mod number;
+mod review;
 mod sections;
 
 pub use builtin::{builtin, builtin_names, builtin_text};
@@ -17,6 +18,7 @@ pub use format::{
     Cell, CellKey, FormatSpec, FrameSpec, LinePitch, RevisionColumn, RevisionKey,
     RevisionTableSpec, SheetSide, SignSpec, TitleBlockSpec, ZoneSpec,
 };
+pub use review::ReviewSpec;
 pub use sections::{
     ArrowSpec, CentreSpec, ClearanceSpec, DashSet, DashSpec, DimensionSpec, Group, HatchSpec,
     LeaderSpec, NumberSpec, Projection, SheetLook, Style, ToleranceLook, ViewSpacing, WordSpec,

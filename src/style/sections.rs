@@ -4,7 +4,9 @@ use std::collections::BTreeMap;
 
 use serde::Deserialize;
 
-use super::{Costs, FormatSpec, FrameSpec, LinePitch, RevisionTableSpec, TitleBlockSpec};
+use super::{
+    Costs, FormatSpec, FrameSpec, LinePitch, ReviewSpec, RevisionTableSpec, TitleBlockSpec,
+};
 
 /// A drafting practice.
 #[derive(Clone, Debug, PartialEq, Deserialize)]
@@ -50,6 +52,8 @@ pub struct Style {
     pub notes: SheetLook,
     /// Fixed words.
     pub words: WordSpec,
+    /// Limits that only checking needs.
+    pub review: ReviewSpec,
     /// What a placement costs.
     pub cost: Costs,
 }
@@ -68,6 +72,8 @@ pub struct Group {
     pub lettering: f64,
     /// Height of dimensions and notes.
     pub text: f64,
+    /// Height of stacked deviations and limits.
+    pub deviation: f64,
     /// Height of section, view and detail letters.
     pub label: f64,
     /// Outline to first dimension line.
@@ -150,8 +156,6 @@ pub struct DimensionSpec {
 #[derive(Clone, Debug, PartialEq, Deserialize)]
 #[serde(deny_unknown_fields)]
 pub struct ToleranceLook {
-    /// Height of stacked deviations and limits as a share of the text height.
-    pub stack_height: f64,
     /// Base line to base line of a stack, in its text height.
     pub stack_pitch: f64,
     /// Blank between size and tolerance.
@@ -218,6 +222,8 @@ pub struct ClearanceSpec {
     pub text_line: f64,
     /// Text to an arrowhead.
     pub text_arrow: f64,
+    /// Text to the text and lines of other annotations, where there is room.
+    pub roomy: f64,
     /// Ink to the frame.
     pub frame: f64,
     /// Ink of one view to that of another.

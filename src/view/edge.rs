@@ -1,8 +1,6 @@
 //! A finished view in view space.
 
-use std::collections::BTreeMap;
-
-use super::anchor::Named;
+use super::anchor::Names;
 use crate::geom::{Arc, Curve, Line, Path, Rect, View as ViewSpace};
 use crate::ident::{PartId, ShapeId, ViewId};
 use crate::source::Span;
@@ -34,7 +32,7 @@ pub struct View {
     pub regions: Vec<Region>,
     /// Box around visible, hidden and cut edges: the extent of the part in this view.
     pub bounds: Rect<ViewSpace>,
-    pub(super) names: BTreeMap<ShapeId, Named>,
+    pub(super) names: Names,
 }
 
 /// One curve of a view.

@@ -6,15 +6,21 @@
 //! scale: what depends on paper (dashes, overshoots, hatch spacing) is decided there and nowhere
 //! else. Later stages do not ask where edges came from.
 
+mod agreement;
 mod anchor;
+mod body;
+mod centre;
+mod dash;
 mod drawn;
 mod edge;
+mod hatch;
 mod paper;
 mod path_data;
 mod precedence;
 mod repeat;
 
+pub use agreement::{Extent, SizeConflict, contradictions};
 pub use anchor::{Anchor, AnchorError, Measured, Size};
 pub use drawn::drawn_view;
 pub use edge::{CentreFeature, Edge, Region, View};
-pub use paper::{PaperEdge, PaperView, on_paper};
+pub use paper::{PaperCentre, PaperEdge, PaperHatch, PaperView, on_paper};

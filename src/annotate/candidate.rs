@@ -1,0 +1,106 @@
+//! All sensible ways to draw an annotation around its view.
+
+use super::annotation::{Annotation, Content};
+use super::fixed::Fixed;
+use super::sketch::Sketch;
+use super::{Practice, angular, diameter, leader, linear, set};
+use crate::geom::{Paper, Placement, Vector};
+use crate::spec::Side;
+use crate::view::PaperView;
+
+/// One way to draw an annotation, around its view's origin.
+#[derive(Clone, Debug)]
+pub struct Candidate {
+    /// The drawing.
+    pub sketch: Sketch<Paper>,
+    /// What it costs by itself and against the view it belongs to.
+    pub cost: f64,
+    /// Where it sits among the tiers of its side; `None` for what has no tier.
+    pub seat: Option<Seat>,
+}
+
+/// Place among the tiers of one side of a view.
+#[derive(Clone, Copy, Debug, PartialEq)]
+pub struct Seat {
+    /// Direction from the view to the dimension line.
+    pub side: Side,
+    /// Tier, 0 is the innermost.
+    pub tier: u8,
+    /// Beginning of the dimension along its side, mm of paper.
+    pub low: f64,
+    /// End of the dimension along its side, mm of paper.
+    pub high: f64,
+}
+
+/// Everything that a generator needs to know about the view.
+#[derive(Clone, Copy)]
+pub(super) struct Ground<'a> {
+    /// The view on paper.
+    pub view: &'a PaperView,
+    /// From view space to paper.
+    pub on: Placement,
+    /// The style's numbers.
+    pub practice: Practice<'a>,
+}
+
+/// How many candidates an annotation keeps.
+const KEPT: usize = 48;
+
+/// The candidates of an annotation, cheapest first; never none.
+#[must_use]
+pub fn candidates(
+    annotation: &Annotation,
+    view: &PaperView,
+    fixed: &Fixed,
+    practice: Practice<'_>,
+) -> Vec<Candidate> {
+    let ground = Ground { view, on: view.placement, practice };
+    let pin = &annotation.pin;
+    let mut all = match &annotation.content {
+        Content::Linear(size) => linear::candidates(size, pin, &ground),
+        Content::Chain(links) => set::chain(links, pin, &ground),
+        Content::Baseline(members) => set::baseline(members, pin, &ground),
+        Content::Angular { vertex, legs, label } => {
+            angular::candidates(*vertex, legs, label, pin, &ground)
+        }
+        Content::Diameter { circles, label } => diameter::candidates(circles, label, pin, &ground),
+        Content::Radius { arcs, label } => diameter::radius_candidates(arcs, label, pin, &ground),
+        Content::Leader { targets, label } => leader::candidates(targets, label, pin, &ground),
+    };
+    for c in &mut all {
+        c.cost += fixed.cost(&c.sketch, c.seat.is_some_and(|s| s.side == Side::Inside), &practice);
+    }
+    keep(all)
+}
+
+/// The cheapest three fifths of what is kept, and the rest evenly sampled from what follows, so
+/// that a crowded sheet still finds a place far away.
+fn keep(mut all: Vec<Candidate>) -> Vec<Candidate> {
+    // Stable, so equal costs stay in the order in which they were offered.
+    all.sort_by(|a, b| a.cost.total_cmp(&b.cost));
+    if all.len() <= KEPT {
+        return all;
+    }
+    let cheap = KEPT * 3 / 5;
+    let rest = all.len() - cheap;
+    let sampled = KEPT - cheap;
+    let mut index = 0;
+    all.retain(|_| {
+        let i = index;
+        index += 1;
+        // Keeps the i-th of the rest where i·sampled/rest steps to a new whole number.
+        i < cheap || ((i - cheap) * sampled / rest) != ((i - cheap + 1) * sampled / rest)
+    });
+    all
+}
+
+/// The side of the view towards which `v` points, by its larger component.
+pub(super) fn side_towards(v: Vector<Paper>) -> Side {
+    if v.x.abs() > v.y.abs() {
+        if v.x > 0.0 { Side::Right } else { Side::Left }
+    } else if v.y > 0.0 {
+        Side::Below
+    } else {
+        Side::Above
+    }
+}

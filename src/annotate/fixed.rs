@@ -1,0 +1,276 @@
+//! What a candidate pays against the geometry of its own view.
+
+use super::Practice;
+use super::sketch::{Head, Sketch, Trace};
+use crate::geom::{Crossing, Line, Paper, Point, Quad, Rect, distance_line_line, line_crossing};
+use crate::scene::Role;
+use crate::spec::LineClass;
+use crate::view::PaperView;
+
+/// A view's lines, flattened and boxed, ready to be asked.
+#[derive(Clone, Debug)]
+pub struct Fixed {
+    lines: Vec<Chain>,
+    hatched: Vec<(Rect<Paper>, Vec<Vec<Point<Paper>>>, f64)>,
+    outline: Rect<Paper>,
+}
+
+#[derive(Clone, Debug)]
+struct Chain {
+    kind: Kind,
+    points: Vec<Point<Paper>>,
+    bounds: Rect<Paper>,
+}
+
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Kind {
+    /// Visible, hidden, cut: text must stay clear.
+    Outline,
+    /// Centre lines: they may be broken for text.
+    Centre,
+}
+
+/// Curves are flattened to chords that stray at most this far on paper, mm: a tenth of a narrow
+/// line, so no check can tell.
+const FLATNESS: f64 = 0.02;
+
+/// Lines within this distance, in mm of paper, run on one another.
+const ON_ONE_ANOTHER: f64 = 0.3;
+
+impl Fixed {
+    /// The lines of a view.
+    #[must_use]
+    pub fn of(view: &PaperView) -> Self {
+        let edges = view.edges.iter().map(|e| {
+            let kind = match e.class {
+                LineClass::Visible
+                | LineClass::Hidden
+                | LineClass::Cut
+                | LineClass::Smooth
+                | LineClass::Adjacent
+                | LineClass::Break => Kind::Outline,
+                LineClass::Centre | LineClass::Construction => Kind::Centre,
+            };
+            (kind, &e.curve)
+        });
+        let centres = view.centres.iter().flat_map(|c| c.lines.iter().map(|l| (Kind::Centre, l)));
+        let lines = edges
+            .chain(centres)
+            .filter_map(|(kind, curve)| {
+                let points = curve.flattened(FLATNESS);
+                let bounds = Rect::around(points.iter().copied())?;
+                Some(Chain { kind, points, bounds })
+            })
+            .collect();
+        let hatched = view
+            .hatch
+            .iter()
+            .filter_map(|h| {
+                let outlines: Vec<Vec<Point<Paper>>> = h
+                    .outlines
+                    .iter()
+                    .map(|path| path.curves.iter().flat_map(|c| c.flattened(FLATNESS)).collect())
+                    .collect();
+                let bounds = Rect::around(outlines.iter().flatten().copied())?;
+                Some((bounds, outlines, h.angle))
+            })
+            .collect();
+        Self { lines, hatched, outline: view.outline }
+    }
+
+    /// What `sketch` pays; `inside` says that its dimension line is meant to stand in the view.
+    #[must_use]
+    pub fn cost(&self, sketch: &Sketch<Paper>, inside: bool, practice: &Practice<'_>) -> f64 {
+        let texts: f64 = sketch.labels.iter().map(|l| self.text_cost(&l.quad(), practice)).sum();
+        let traces: f64 = sketch.traces.iter().map(|t| self.trace_cost(t, sketch, practice)).sum();
+        let heads: f64 = if inside {
+            0.0
+        } else {
+            sketch.heads.iter().map(|h| self.head_cost(h, practice)).sum()
+        };
+        texts + traces + heads
+    }
+
+    fn text_cost(&self, quad: &Quad<Paper>, practice: &Practice<'_>) -> f64 {
+        let costs = &practice.style.cost.unary;
+        let clear = &practice.style.clearance;
+        let bounds = quad.bounds();
+        let mut cost = 0.0;
+        let reach = clear.text_outline + practice.group.wide / 2.0;
+        let near = |kind: Kind, reach: f64| {
+            self.lines.iter().any(|c| {
+                c.kind == kind
+                    && c.bounds.grown(reach).distance(&bounds) <= 0.0
+                    && c.points.windows(2).any(|w| quad.distance_to_line(w[0], w[1]) < reach)
+            })
+        };
+        if near(Kind::Outline, reach) {
+            cost += costs.text_on_outline;
+        }
+        if near(Kind::Centre, clear.text_line) {
+            cost += costs.text_on_centre;
+        }
+        let middle = bounds.centre();
+        if self.outline.contains(middle) {
+            cost += costs.text_inside_view;
+        }
+        if self.hatch_at(middle).is_some() {
+            cost += costs.text_on_hatch;
+        }
+        cost
+    }
+
+    fn trace_cost(
+        &self,
+        trace: &Trace<Paper>,
+        sketch: &Sketch<Paper>,
+        practice: &Practice<'_>,
+    ) -> f64 {
+        let costs = &practice.style.cost.unary;
+        let points = trace.curve.flattened(FLATNESS);
+        let bounds = trace.curve.bounds();
+        let trim = practice.style.cost.trim;
+        let mut crossings = 0usize;
+        let mut on_outline = false;
+        for chain in self.lines.iter().filter(|c| c.kind == Kind::Outline) {
+            if chain.bounds.distance(&bounds) > ON_ONE_ANOTHER {
+                continue;
+            }
+            for piece in points.windows(2) {
+                let Some(own) = trimmed(piece[0], piece[1], trim) else { continue };
+                for w in chain.points.windows(2) {
+                    match line_crossing(&own, &Line::new(w[0], w[1]), ON_ONE_ANOTHER) {
+                        Crossing::At { .. } => crossings += 1,
+                        Crossing::Along { length } if length > 0.5 => on_outline = true,
+                        Crossing::Along { .. } | Crossing::Apart => {}
+                    }
+                }
+            }
+        }
+        let crossings = crossings as f64;
+        match trace.role {
+            Role::Dim => {
+                let on = if on_outline { costs.dim_on_outline } else { 0.0 };
+                crossings * costs.dim_crosses_outline + on
+            }
+            Role::Ext => {
+                let inside = length_inside(&trace.curve.start(), &trace.curve.end(), &self.outline);
+                crossings * costs.ext_crosses_outline
+                    + inside * costs.ext_inside_per_mm
+                    + trace.curve.length() * costs.ext_per_mm
+            }
+            Role::Leader => {
+                crossings * costs.leader_crosses_outline
+                    + self.leader_along(trace, sketch, practice)
+            }
+            Role::Arrow | Role::TextFrame => 0.0,
+        }
+    }
+
+    /// What a leader pays for running along a line that it ends on, or along hatching.
+    fn leader_along(
+        &self,
+        trace: &Trace<Paper>,
+        sketch: &Sketch<Paper>,
+        practice: &Practice<'_>,
+    ) -> f64 {
+        let tip = trace.curve.start();
+        if !sketch.heads.iter().any(|h| h.tip().is_at(tip)) {
+            return 0.0;
+        }
+        let costs = &practice.style.cost.unary;
+        let least = practice.style.leader.least_to_lines;
+        let Some(direction) = trace.curve.direction(0.0) else { return 0.0 };
+        let steep = |other: f64| {
+            let d = (direction.angle() - other).rem_euclid(180.0);
+            d.min(180.0 - d) < least
+        };
+        let touching = self.lines.iter().filter(|c| c.kind == Kind::Outline).any(|c| {
+            c.points.windows(2).any(|w| {
+                distance_line_line(tip, tip, w[0], w[1]) < ON_ONE_ANOTHER
+                    && w[0].distance(w[1]) > 1.0
+                    && steep((w[1] - w[0]).angle())
+            })
+        });
+        let hatching = self.hatched.iter().any(|(bounds, _, angle)| {
+            let stretch = length_inside(&tip, &trace.curve.end(), bounds);
+            // Every millimetre of the leader over the face's box is asked.
+            stretch > 0.0
+                && steep(*angle)
+                && (0..=(trace.curve.length().ceil() as usize)).any(|mm| {
+                    let t = mm as f64 / trace.curve.length().max(1.0);
+                    self.hatch_at(trace.curve.at(t.min(1.0))).is_some()
+                })
+        });
+        if touching || hatching { costs.leader_parallel } else { 0.0 }
+    }
+
+    fn head_cost(&self, head: &Head<Paper>, practice: &Practice<'_>) -> f64 {
+        let (tip, foot) = (head.tip(), head.foot());
+        let Some(own) = trimmed(tip, foot, practice.style.cost.trim) else { return 0.0 };
+        let bounds = head.bounds();
+        let crosses = self.lines.iter().filter(|c| c.kind == Kind::Outline).any(|c| {
+            c.bounds.distance(&bounds) <= 0.0
+                && c.points.windows(2).any(|w| {
+                    let line = Line::new(w[0], w[1]);
+                    matches!(line_crossing(&own, &line, 1e-6), Crossing::At { .. })
+                })
+        });
+        if crosses { practice.style.cost.unary.arrow_crosses_outline } else { 0.0 }
+    }
+
+    /// The hatching angle at a place, if it lies on a cut face.
+    fn hatch_at(&self, p: Point<Paper>) -> Option<f64> {
+        self.hatched
+            .iter()
+            .find(|(bounds, outlines, _)| {
+                bounds.contains(p)
+                    && outlines.iter().filter(|o| winds_around(o, p)).count() % 2 == 1
+            })
+            .map(|(_, _, angle)| *angle)
+    }
+}
+
+/// The line without `trim` mm at both ends; `None` if nothing is left.
+pub(crate) fn trimmed<S: crate::geom::Space>(
+    a: Point<S>,
+    b: Point<S>,
+    trim: f64,
+) -> Option<Line<S>> {
+    let length = a.distance(b);
+    let unit = (b - a).unit()?;
+    (length > 2.0 * trim).then(|| Line::new(a + unit * trim, b - unit * trim))
+}
+
+/// Whether a ray from `p` to the right crosses the closed polygon an odd number of times.
+fn winds_around(polygon: &[Point<Paper>], p: Point<Paper>) -> bool {
+    let mut inside = false;
+    let closing = polygon.last().zip(polygon.first()).map(|(a, b)| [*a, *b]);
+    let sides = polygon.windows(2).map(|w| [w[0], w[1]]).chain(closing);
+    for [a, b] in sides {
+        if (a.y > p.y) != (b.y > p.y) && p.x < a.x + (p.y - a.y) / (b.y - a.y) * (b.x - a.x) {
+            inside = !inside;
+        }
+    }
+    inside
+}
+
+/// Length of the straight line's part inside the box, mm.
+fn length_inside(a: &Point<Paper>, b: &Point<Paper>, rect: &Rect<Paper>) -> f64 {
+    let v = *b - *a;
+    let (mut t0, mut t1) = (0.0f64, 1.0f64);
+    for (p, d, low, high) in
+        [(a.x, v.x, rect.min.x, rect.max.x), (a.y, v.y, rect.min.y, rect.max.y)]
+    {
+        if d.abs() < 1e-12 {
+            if p < low || p > high {
+                return 0.0;
+            }
+        } else {
+            let (u, w) = ((low - p) / d, (high - p) / d);
+            t0 = t0.max(u.min(w));
+            t1 = t1.min(u.max(w));
+        }
+    }
+    (t1 - t0).max(0.0) * v.length()
+}

@@ -1,0 +1,404 @@
+//! Sheet size and scale: given, or the smallest sheet and the largest preferred scale at which
+//! everything fits.
+
+use std::sync::Arc;
+
+use super::Layout;
+use super::arrange::{Field, Room, Shortage, arrange};
+use super::choice::Problem;
+use super::grid::stands;
+use super::ink::{Choice, Chooser, Ink, whole};
+use super::surroundings::Surroundings;
+use crate::annotate::{
+    Annotation, Candidate, Fixed, Label, PlacedLabel, Practice, Sketch, candidates, resolve,
+};
+use crate::geom::{Curve, Paper, Point, Rect, Sheet, Shift};
+use crate::ident::{ItemId, ViewId};
+use crate::source::{Diagnostic, Diagnostics};
+use crate::spec::{Drawing, FormatChoice, LineClass, ScaleChoice};
+use crate::style::{FormatSpec, Style};
+use crate::units::Scale;
+use crate::view::{PaperView, View, on_paper};
+
+/// A view where it stands.
+#[derive(Clone, Debug)]
+pub struct PlacedView {
+    /// Its id.
+    pub id: ViewId,
+    /// The view on paper, around its own origin.
+    pub paper: PaperView,
+    /// Where that origin stands.
+    pub shift: Shift,
+    /// Its scale.
+    pub scale: Scale,
+    /// Its label.
+    pub label: Option<PlacedLabel<Sheet>>,
+}
+
+/// An annotation where it stands.
+#[derive(Clone, Debug)]
+pub struct Placed {
+    /// The annotation.
+    pub annotation: Annotation,
+    /// The drawing that was chosen.
+    pub sketch: Sketch<Sheet>,
+    /// Annotations that it could not be kept clear of.
+    pub conflicts: Vec<ItemId>,
+}
+
+/// Why nothing can be laid out.
+#[derive(Clone, Debug, PartialEq, thiserror::Error)]
+pub enum LayoutError {
+    /// The style knows no such sheet size.
+    #[error("the style has no sheet size `{name}`")]
+    UnknownFormat {
+        /// As asked for.
+        name: String,
+        /// What there is.
+        known: Vec<String>,
+    },
+    /// The views do not fit.
+    #[error("at {scale} the views and their annotations need {} × {} mm, {format} has room for {} × {} mm",
+        needed.0.ceil(), needed.1.ceil(), available.0.floor(), available.1.floor())]
+    DoesNotFit {
+        /// The scale tried last.
+        scale: Scale,
+        /// The sheet size tried last.
+        format: String,
+        /// Width and height needed, mm.
+        needed: (f64, f64),
+        /// Width and height inside the frame, mm.
+        available: (f64, f64),
+    },
+}
+
+impl LayoutError {
+    /// The error with its place in the spec and a way out.
+    #[must_use]
+    pub fn diagnostic(&self, drawing: &Drawing) -> Diagnostic {
+        let sheet = &drawing.sheet;
+        let format_span = match &sheet.format {
+            FormatChoice::Named(n) => Some(n.span),
+            FormatChoice::Auto => None,
+        };
+        let scale_span = match &sheet.scale {
+            ScaleChoice::Given(s) => Some(s.span),
+            ScaleChoice::Auto => None,
+        };
+        match self {
+            Self::UnknownFormat { name, known } => {
+                let names: Vec<&str> = known.iter().map(String::as_str).collect();
+                let help = match crate::source::nearest(name, names.iter().copied()) {
+                    Some(near) => {
+                        format!("did you mean `{near}`? The style has {}", names.join(", "))
+                    }
+                    None => format!("the style has {}; or say \"auto\"", names.join(", ")),
+                };
+                Diagnostic::error(format_span, self.to_string()).help(help)
+            }
+            Self::DoesNotFit { .. } => {
+                let span = scale_span.or(format_span).unwrap_or(sheet.span);
+                Diagnostic::error(span, self.to_string()).help(
+                    "take a smaller scale or a larger sheet, or let the program choose with \
+                     scale = \"auto\" and sheet = \"auto\"",
+                )
+            }
+        }
+    }
+}
+
+/// Lays the drawing out.
+///
+/// # Errors
+/// [`LayoutError`] where the sheet size is unknown or nothing that the spec allows fits.
+pub fn lay_out(drawing: &Drawing, views: &[View], style: &Style) -> Result<Layout, LayoutError> {
+    let formats = formats(drawing, style)?;
+    let scales = scales(drawing, style);
+    let smallest = smallest_feature(views);
+    let auto = drawing.sheet.scale == ScaleChoice::Auto;
+    let mut last = None;
+    for (i, format) in formats.iter().enumerate() {
+        let desk = Desk::new(drawing, views, style, format);
+        for scale in &scales {
+            let legible = smallest * scale.factor() >= style.views.smallest_feature;
+            // A larger sheet may still show it legibly; on the largest anything goes.
+            if auto && !legible && i + 1 < formats.len() {
+                continue;
+            }
+            match desk.try_scale(*scale) {
+                Ok(layout) => return Ok(layout),
+                Err(short) => last = Some((short, *scale, format.name.clone())),
+            }
+        }
+    }
+    let (short, scale, format) = last.unwrap_or_else(|| {
+        let none = Shortage { needed: (0.0, 0.0), available: (0.0, 0.0) };
+        (none, Scale::FULL, String::new())
+    });
+    let (needed, available) = (short.needed, short.available);
+    Err(LayoutError::DoesNotFit { scale, format, needed, available })
+}
+
+/// The sheet sizes that the spec allows, smallest first.
+fn formats<'a>(drawing: &Drawing, style: &'a Style) -> Result<Vec<&'a FormatSpec>, LayoutError> {
+    match &drawing.sheet.format {
+        FormatChoice::Named(name) => {
+            let found = style.format.iter().find(|f| f.name == name.value);
+            found.map(|f| vec![f]).ok_or_else(|| LayoutError::UnknownFormat {
+                name: name.value.clone(),
+                known: style.format.iter().map(|f| f.name.clone()).collect(),
+            })
+        }
+        FormatChoice::Auto => {
+            let mut all: Vec<&FormatSpec> = style.format.iter().collect();
+            all.sort_by(|a, b| (a.width * a.height).total_cmp(&(b.width * b.height)));
+            Ok(all)
+        }
+    }
+}
+
+/// The scales that the spec allows, largest first.
+fn scales(drawing: &Drawing, style: &Style) -> Vec<Scale> {
+    match &drawing.sheet.scale {
+        ScaleChoice::Given(s) => vec![s.value],
+        ScaleChoice::Auto => style.scales.iter().filter_map(|s| s.parse().ok()).collect(),
+    }
+}
+
+/// The shortest visible edge or smallest diameter, mm of the part.
+fn smallest_feature(views: &[View]) -> f64 {
+    views
+        .iter()
+        .flat_map(|v| &v.edges)
+        .filter(|e| e.class == LineClass::Visible)
+        .map(|e| match &e.curve {
+            Curve::Arc(a) if a.is_full() => a.radius * 2.0,
+            other => other.length(),
+        })
+        .filter(|l| *l > 1e-3)
+        .fold(f64::INFINITY, f64::min)
+}
+
+/// One sheet size, with what depends on it alone.
+struct Desk<'a> {
+    drawing: &'a Drawing,
+    views: &'a [View],
+    practice: Practice<'a>,
+    format: &'a FormatSpec,
+    annotations: Vec<Annotation>,
+}
+
+/// A view with its annotations placed as if it were alone.
+struct Alone {
+    paper: PaperView,
+    scale: Scale,
+    /// Places of its annotations in the drawing's list.
+    members: Vec<usize>,
+    offers: Vec<Vec<Candidate>>,
+    picks: Vec<usize>,
+    label: Option<Arc<Label>>,
+}
+
+impl<'a> Desk<'a> {
+    fn new(
+        drawing: &'a Drawing,
+        views: &'a [View],
+        style: &'a Style,
+        format: &'a FormatSpec,
+    ) -> Self {
+        let practice = Practice { style, group: style.group_of(&format.name) };
+        // What cannot be bound was reported before the layout began.
+        let annotations = resolve(drawing, views, practice, &mut Diagnostics::default());
+        Self { drawing, views, practice, format, annotations }
+    }
+
+    fn try_scale(&self, scale: Scale) -> Result<Layout, Shortage> {
+        let facts = crate::sheet::FurnitureFacts { scale: Some(scale), index: 1, count: 1 };
+        let furniture =
+            crate::sheet::furniture(self.drawing, &facts, self.practice.style, self.format);
+        self.outlines_fit(scale, &furniture.frame)?;
+        let alone: Vec<Alone> = (0..self.views.len()).map(|i| self.alone(i, scale)).collect();
+        let stands = stands(self.views, self.practice.style.projection);
+        let rooms: Vec<Room> = alone
+            .iter()
+            .zip(stands)
+            .map(|(a, stand)| Room { stand, outline: a.paper.outline, ink: self.room(a) })
+            .collect();
+        let field = Field {
+            frame: furniture.frame,
+            blocks: furniture.blocks.iter().map(|b| b.area).collect(),
+        };
+        let shifts = arrange(&rooms, &field, &self.practice)?;
+        let annotations = self.together(&alone, &shifts, &field);
+        let views = self.placed_views(alone, &shifts, &annotations);
+        Ok(Layout {
+            format: self.format.clone(),
+            scale,
+            views,
+            annotations,
+            furniture: furniture.items,
+            misfits: furniture.misfits,
+            frame: furniture.frame,
+        })
+    }
+
+    /// A quick look before anything is placed: no view may be larger than the frame.
+    fn outlines_fit(&self, scale: Scale, frame: &Rect<Sheet>) -> Result<(), Shortage> {
+        let inner = frame.grown(-self.practice.style.views.frame_gap);
+        for view in self.views {
+            let k = view.scale.unwrap_or(scale).factor();
+            let needed = (view.bounds.width() * k, view.bounds.height() * k);
+            if needed.0 > inner.width() || needed.1 > inner.height() {
+                return Err(Shortage { needed, available: (inner.width(), inner.height()) });
+            }
+        }
+        Ok(())
+    }
+
+    fn alone(&self, index: usize, main: Scale) -> Alone {
+        let view = &self.views[index];
+        let scale = view.scale.unwrap_or(main);
+        let paper = on_paper(view, scale, self.practice.style, self.practice.group);
+        let fixed = Fixed::of(&paper);
+        let members: Vec<usize> =
+            (0..self.annotations.len()).filter(|i| self.annotations[*i].view == index).collect();
+        let offers: Vec<Vec<Candidate>> = members
+            .iter()
+            .map(|i| candidates(&self.annotations[*i], &paper, &fixed, self.practice))
+            .collect();
+        let choosers: Vec<Chooser<Paper>> = offers
+            .iter()
+            .map(|offer| Chooser {
+                view: index,
+                choices: offer
+                    .iter()
+                    .map(|c| Choice { cost: whole(c.cost), ink: Ink::of(&c.sketch), seat: c.seat })
+                    .collect(),
+            })
+            .collect();
+        let picks = Problem::new(&choosers, self.practice).solve(None);
+        let label = self.label(view, scale, main);
+        Alone { paper, scale, members, offers, picks, label }
+    }
+
+    /// The view's label; a scale of its own is part of it.
+    fn label(&self, view: &View, scale: Scale, main: Scale) -> Option<Arc<Label>> {
+        let number = &self.practice.style.number;
+        let name = view.label.as_ref().map(|t| t.format(number));
+        let own = (scale != main).then(|| format!("({scale})"));
+        let text = match (name, own) {
+            (None, None) => return None,
+            (Some(n), None) => n,
+            (None, Some(s)) => s,
+            (Some(n), Some(s)) => format!("{n} {s}"),
+        };
+        Some(Arc::new(Label::line(&text, self.practice.group.label)))
+    }
+
+    /// Box around a view with its annotations as placed alone, and its label above them.
+    fn room(&self, alone: &Alone) -> Rect<Paper> {
+        let centres = alone.paper.centres.iter().flat_map(|c| c.lines.iter().map(Curve::bounds));
+        let picked =
+            alone.offers.iter().zip(&alone.picks).filter_map(|(o, p)| o[*p].sketch.bounds());
+        let ink = Rect::union_of(centres.chain(picked).chain([alone.paper.outline]))
+            .unwrap_or(alone.paper.outline);
+        match &alone.label {
+            None => ink,
+            Some(label) => {
+                let placed = self.label_above(label, ink, alone.paper.outline);
+                ink.union(placed.quad().bounds())
+            }
+        }
+    }
+
+    /// A label centred over the outline, above all ink.
+    fn label_above<S: crate::geom::Space>(
+        &self,
+        label: &Arc<Label>,
+        ink: Rect<S>,
+        outline: Rect<S>,
+    ) -> PlacedLabel<S> {
+        let x = outline.centre().x - label.advance() / 2.0;
+        let y = ink.min.y - self.practice.style.views.label_gap;
+        PlacedLabel { label: label.clone(), origin: Point::new(x, y), angle: 0.0 }
+    }
+
+    /// All annotations placed once more, among everything on the sheet.
+    fn together(&self, alone: &[Alone], shifts: &[Shift], field: &Field) -> Vec<Placed> {
+        let surroundings = Surroundings {
+            frame: field.frame,
+            blocks: field.blocks.clone(),
+            views: alone.iter().zip(shifts).map(|(a, s)| s.rect(&a.paper.outline)).collect(),
+        };
+        let mut order = Vec::new();
+        let mut sketches = Vec::new();
+        let mut choosers = Vec::new();
+        let mut start = Vec::new();
+        for (view, (a, shift)) in alone.iter().zip(shifts).enumerate() {
+            for ((member, offer), pick) in a.members.iter().zip(&a.offers).zip(&a.picks) {
+                let drawn: Vec<Sketch<Sheet>> =
+                    offer.iter().map(|c| c.sketch.on_sheet(shift)).collect();
+                let choices = offer
+                    .iter()
+                    .zip(&drawn)
+                    .map(|(c, sketch)| {
+                        let ink = Ink::of(sketch);
+                        let around = surroundings.cost(&ink, view, &self.practice);
+                        Choice { cost: whole(c.cost + around), ink, seat: c.seat }
+                    })
+                    .collect();
+                order.push(*member);
+                sketches.push(drawn);
+                choosers.push(Chooser { view, choices });
+                start.push(*pick);
+            }
+        }
+        let mut problem = Problem::new(&choosers, self.practice);
+        let picks = problem.solve(Some(&start));
+        let (_, conflicts) = problem.verdict(&picks);
+        let id = |i: &usize| self.annotations[order[*i]].id.clone();
+        let mut placed: Vec<(usize, Placed)> = order
+            .iter()
+            .enumerate()
+            .map(|(i, member)| {
+                let placed = Placed {
+                    annotation: self.annotations[*member].clone(),
+                    sketch: sketches[i][picks[i]].clone(),
+                    conflicts: conflicts
+                        .get(&i)
+                        .map_or_else(Vec::new, |c| c.iter().map(id).collect()),
+                };
+                (*member, placed)
+            })
+            .collect();
+        placed.sort_by_key(|(member, _)| *member);
+        placed.into_iter().map(|(_, p)| p).collect()
+    }
+
+    fn placed_views(
+        &self,
+        alone: Vec<Alone>,
+        shifts: &[Shift],
+        annotations: &[Placed],
+    ) -> Vec<PlacedView> {
+        alone
+            .into_iter()
+            .zip(shifts)
+            .enumerate()
+            .map(|(i, (a, shift))| {
+                let outline = shift.rect(&a.paper.outline);
+                let centres = a.paper.centres.iter().flat_map(|c| &c.lines);
+                let own = annotations.iter().filter(|p| p.annotation.view == i);
+                let ink = Rect::union_of(
+                    own.filter_map(|p| p.sketch.bounds())
+                        .chain(centres.map(|c| shift.rect(&c.bounds())))
+                        .chain([outline]),
+                );
+                let label =
+                    a.label.as_ref().map(|l| self.label_above(l, ink.unwrap_or(outline), outline));
+                let id = self.views[i].id.clone();
+                PlacedView { id, paper: a.paper, shift: *shift, scale: a.scale, label }
+            })
+            .collect()
+    }
+}

@@ -1,0 +1,128 @@
+//! All stages in their order, as one function.
+
+use crate::annotate::{Practice, resolve};
+use crate::layout::{Layout, lay_out};
+use crate::review::{Conflict, Misfit, Review, ReviewInput, review};
+use crate::scene::Scene;
+use crate::source::{Diagnostic, Diagnostics};
+use crate::spec::{Drawing, FormatChoice};
+use crate::style::{self, Style};
+use crate::view::{Extent, SizeConflict, View, contradictions, drawn_view};
+
+/// A drawing with its sheets.
+#[derive(Clone, Debug)]
+pub struct Drawn {
+    /// What the spec asked for.
+    pub drawing: Drawing,
+    /// The style that it follows.
+    pub style: Style,
+    /// Its views, in view space.
+    pub views: Vec<View>,
+    /// Where everything went.
+    pub layout: Layout,
+    /// Its sheets.
+    pub scenes: Vec<Scene>,
+}
+
+/// Draws a resolved spec. Everything that is wrong with it is reported at once; `None` if any of
+/// that forbids making a sheet.
+#[must_use]
+pub fn draw(drawing: Drawing, diagnostics: &mut Diagnostics) -> Option<Drawn> {
+    let style = style_of(&drawing, diagnostics);
+    let views: Vec<View> =
+        drawing.views.iter().filter_map(|v| drawn_view(v, diagnostics)).collect();
+    // Anchors are bound against the views that could be made; a view that could not be made has
+    // said so, and its annotations need not complain again.
+    if views.len() < drawing.views.len() {
+        return None;
+    }
+    let style = style?;
+    if views.is_empty() {
+        let problem = Diagnostic::error(drawing.sheet.span, "the drawing has no view")
+            .help("add a [[view]] with an id, from = \"front\" and shapes");
+        diagnostics.push(problem);
+        return None;
+    }
+    let format = match &drawing.sheet.format {
+        FormatChoice::Named(n) => n.value.as_str(),
+        FormatChoice::Auto => style.format.first().map_or("", |f| f.name.as_str()),
+    };
+    let practice = Practice { style: &style, group: style.group_of(format) };
+    let _bound = resolve(&drawing, &views, practice, diagnostics);
+    if diagnostics.has_errors() {
+        return None;
+    }
+    match lay_out(&drawing, &views, &style) {
+        Ok(layout) => {
+            let scene = crate::compose::compose(&drawing, &layout, &style);
+            Some(Drawn { drawing, style, views, layout, scenes: vec![scene] })
+        }
+        Err(e) => {
+            diagnostics.push(e.diagnostic(&drawing));
+            None
+        }
+    }
+}
+
+/// What a checker would mark on the sheets of a drawing.
+#[must_use]
+pub fn check(drawn: &Drawn) -> Review {
+    let misfits: Vec<Misfit> = drawn.layout.misfits.iter().map(misfit).collect();
+    let conflicts: Vec<Conflict> = contradictions(&drawn.views)
+        .iter()
+        .map(|c| conflict(c, &drawn.views, &drawn.style))
+        .collect();
+    review(&ReviewInput {
+        scenes: &drawn.scenes,
+        style: &drawn.style,
+        drawing: Some(&drawn.drawing),
+        misfits: &misfits,
+        conflicts: &conflicts,
+    })
+}
+
+fn misfit(m: &crate::sheet::Misfit) -> Misfit {
+    Misfit {
+        sheet: 1,
+        item: m.item.clone(),
+        area: m.place,
+        excess: m.excess(),
+        message: m.to_string(),
+        span: m.span,
+    }
+}
+
+fn conflict(c: &SizeConflict, views: &[View], style: &Style) -> Conflict {
+    let (a, b) = (&views[c.views.0], &views[c.views.1]);
+    let extent = match c.extent {
+        Extent::Width => "width",
+        Extent::Height => "height",
+        Extent::Depth => "depth",
+    };
+    let mm = |v: f64| style.number.length(v, None);
+    let (first, second) = (mm(c.lengths.0), mm(c.lengths.1));
+    Conflict {
+        views: vec![a.id.clone(), b.id.clone()],
+        message: format!(
+            "the part's {extent} is {first} in view `{}` and {second} in view `{}`",
+            a.id, b.id
+        ),
+        difference: (c.lengths.0 - c.lengths.1).abs(),
+        spans: vec![a.span, b.span],
+    }
+}
+
+fn style_of(drawing: &Drawing, diagnostics: &mut Diagnostics) -> Option<Style> {
+    let asked = &drawing.sheet.style;
+    let found = style::builtin(&asked.value);
+    if found.is_none() {
+        let names = style::builtin_names();
+        let help = match crate::source::nearest(&asked.value, names.iter().copied()) {
+            Some(near) => format!("did you mean `{near}`?"),
+            None => format!("the styles are {}", names.join(", ")),
+        };
+        let message = format!("there is no style `{}`", asked.value);
+        diagnostics.push(Diagnostic::error(asked.span, message).help(help));
+    }
+    found
+}

@@ -1,0 +1,29 @@
+//! The look of the sheet: what overlaps, crosses, stands too close or cannot be read.
+
+pub(crate) mod annotation_in_other_view;
+pub(crate) mod arrow_crowded;
+pub(crate) mod arrow_on_text;
+pub(crate) mod centre_line_long;
+pub(crate) mod crowded;
+pub(crate) mod dimension_lines_cross;
+pub(crate) mod dimension_on_hatch;
+pub(crate) mod extension_crosses_dimension;
+pub(crate) mod first_tier_close;
+pub(crate) mod leader_angle;
+pub(crate) mod leader_crosses_dimension;
+pub(crate) mod leader_long;
+pub(crate) mod leaders_cross;
+pub(crate) mod line_widths;
+pub(crate) mod lines_merge;
+pub(crate) mod order_of_tiers;
+pub(crate) mod outside_frame;
+pub(crate) mod text_heights;
+pub(crate) mod text_in_other_view;
+pub(crate) mod text_on_line;
+pub(crate) mod text_on_text;
+pub(crate) mod text_small;
+pub(crate) mod text_upside_down;
+pub(crate) mod tier_spacing;
+pub(crate) mod too_close;
+pub(crate) mod unbalanced_sheet;
+pub(crate) mod view_too_close;
