@@ -44,7 +44,7 @@ pub(super) fn candidates(
             let costs = &ground.practice.style.cost.unary;
             let cost = costs.tier_per_mm * f64::from(step) * group.pitch
                 + if outside { costs.text_outside + costs.arrows_outside } else { 0.0 };
-            all.push(Candidate { sketch, cost, seat: None });
+            all.push(Candidate { sketch, cost, seats: Vec::new() });
         }
     }
     all

@@ -15,8 +15,8 @@ pub struct Candidate {
     pub sketch: Sketch<Paper>,
     /// What it costs by itself and against the view it belongs to.
     pub cost: f64,
-    /// Where it sits among the tiers of its side; `None` for what has no tier.
-    pub seat: Option<Seat>,
+    /// Where its dimension lines sit among the tiers of their side; none for what has no tier.
+    pub seats: Vec<Seat>,
 }
 
 /// Place among the tiers of one side of a view.
@@ -68,7 +68,7 @@ pub fn candidates(
         Content::Leader { targets, label } => leader::candidates(targets, label, pin, &ground),
     };
     for c in &mut all {
-        c.cost += fixed.cost(&c.sketch, c.seat.is_some_and(|s| s.side == Side::Inside), &practice);
+        c.cost += fixed.cost(&c.sketch, c.seats.iter().any(|s| s.side == Side::Inside), &practice);
     }
     keep(all)
 }

@@ -27,12 +27,12 @@ pub(super) fn candidates(
             for length in lengths(rim, degrees, ground) {
                 let cost = leader_cost(degrees, length, ground);
                 let sketch = draw(rim, degrees, length, label, ground);
-                all.push(Candidate { sketch, cost, seat: None });
+                all.push(Candidate { sketch, cost, seats: Vec::new() });
                 if 2.0 * radius >= ground.practice.style.dimension.inside_arrows * arrow * 1.6 {
                     // Both arrowheads stand on the circle itself: the plainest form, so cheaper.
                     let sketch = across(circle, degrees, length, label, ground);
                     let prize = ground.practice.style.cost.unary.leader_angle_steep;
-                    all.push(Candidate { sketch, cost: cost - prize, seat: None });
+                    all.push(Candidate { sketch, cost: cost - prize, seats: Vec::new() });
                 }
             }
         }
@@ -56,7 +56,7 @@ pub(super) fn radius_candidates(
             for length in lengths(rim, degrees, ground) {
                 let sketch = draw(rim, degrees, length, label, ground);
                 let cost = leader_cost(degrees, length, ground);
-                all.push(Candidate { sketch, cost, seat: None });
+                all.push(Candidate { sketch, cost, seats: Vec::new() });
             }
             // From the centre's side: the line starts at the text and passes the centre only where
             // the arc is too small to hold it.
@@ -65,7 +65,7 @@ pub(super) fn radius_candidates(
                 let length = length.max(radius.min(ground.practice.style.leader.longest));
                 let sketch = draw(rim, inward, length, label, ground);
                 let cost = leader_cost(inward, length, ground);
-                all.push(Candidate { sketch, cost, seat: None });
+                all.push(Candidate { sketch, cost, seats: Vec::new() });
             }
         }
     }

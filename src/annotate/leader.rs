@@ -30,7 +30,7 @@ pub(super) fn candidates(
                 for length in lengths(tip, direction, ground) {
                     let sketch = draw(tip, direction, length, label, ground);
                     let cost = aim_cost + leader_cost(direction, length, ground);
-                    all.push(Candidate { sketch, cost, seat: None });
+                    all.push(Candidate { sketch, cost, seats: Vec::new() });
                 }
             }
         }

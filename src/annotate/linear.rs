@@ -25,7 +25,7 @@ pub(super) fn candidates(size: &LinearSize, pin: &Pin, ground: &Ground<'_>) -> V
                 let sketch = draw(&member, &axes, level, *spot, ground);
                 let seat = Seat { side, tier, low: member.first.t, high: member.second.t };
                 let cost = cost + tier_cost(tier, ground) + side_cost(side, ground);
-                all.push(Candidate { sketch, cost, seat: Some(seat) });
+                all.push(Candidate { sketch, cost, seats: vec![seat] });
             }
         }
     }
@@ -152,7 +152,7 @@ fn inside(
                 Seat { side: Side::Inside, tier: 0, low: member.first.t, high: member.second.t };
             let sketch = draw(member, axes, level, spot, ground);
             let cost = cost + p.style.cost.unary.dim_inside_view;
-            all.push(Candidate { sketch, cost, seat: Some(seat) });
+            all.push(Candidate { sketch, cost, seats: vec![seat] });
         }
     }
     all

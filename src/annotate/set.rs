@@ -28,7 +28,7 @@ pub(super) fn chain(links: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> Vec
                 member.body(&mut sketch, &axes, level, *spot, *ends, &ground.practice);
             }
             let cost = text_cost + tier_cost(tier, ground) + side_cost(side, ground);
-            all.push(Candidate { sketch, cost, seat: Some(seat(side, tier, &members)) });
+            all.push(Candidate { sketch, cost, seats: vec![seat(side, tier, &members)] });
         }
     }
     all
@@ -58,7 +58,11 @@ pub(super) fn baseline(sizes: &[LinearSize], pin: &Pin, ground: &Ground<'_>) -> 
                     member.body(&mut sketch, &axes, level, spot, [end, end], &ground.practice);
                     cost += spot_cost;
                 }
-                all.push(Candidate { sketch, cost, seat: Some(seat(side, start, &members)) });
+                let seats = (start..)
+                    .zip(&members)
+                    .map(|(tier, m)| seat(side, tier, std::slice::from_ref(m)))
+                    .collect();
+                all.push(Candidate { sketch, cost, seats });
             }
         }
     }

@@ -47,12 +47,16 @@ pub(super) fn arrange(
     field: &Field,
     practice: &Practice<'_>,
 ) -> Result<Vec<Shift>, Shortage> {
+    let spacing = &practice.style.views;
     let mut shortage = None;
-    for extra in EXTRA {
-        let local = relative(rooms, extra, practice);
-        match settle(rooms, &local, field, practice) {
-            Ok(shifts) => return Ok(shifts),
-            Err(s) => shortage = Some(s),
+    for margin in [spacing.frame_gap, spacing.frame_gap_least] {
+        let inner = field.frame.grown(-margin);
+        for extra in EXTRA {
+            let local = relative(rooms, extra, practice);
+            match settle(rooms, &local, inner, &field.blocks, practice) {
+                Ok(shifts) => return Ok(shifts),
+                Err(s) => shortage = Some(s),
+            }
         }
     }
     Err(shortage.unwrap_or(Shortage { needed: (0.0, 0.0), available: (0.0, 0.0) }))
@@ -160,13 +164,12 @@ fn tracks(
 fn settle(
     rooms: &[Room],
     local: &[Option<Point<Sheet>>],
-    field: &Field,
+    inner: Rect<Sheet>,
+    blocks: &[Rect<Sheet>],
     practice: &Practice<'_>,
 ) -> Result<Vec<Shift>, Shortage> {
     let spacing = &practice.style.views;
-    let inner = field.frame.grown(-spacing.frame_gap);
-    let blocks: Vec<Rect<Sheet>> =
-        field.blocks.iter().map(|b| b.grown(spacing.block_gap)).collect();
+    let blocks: Vec<Rect<Sheet>> = blocks.iter().map(|b| b.grown(spacing.block_gap)).collect();
     let inks: Vec<Rect<Sheet>> =
         rooms.iter().zip(local).filter_map(|(r, p)| p.map(|p| Shift::to(p).rect(&r.ink))).collect();
     let short = |all: Rect<Sheet>| Shortage {

@@ -182,8 +182,9 @@ impl<'a, S: Space> Problem<'a, S> {
         let freedom = |c: &Chooser<S>| {
             let least = c.choices.iter().map(|o| o.cost).min().unwrap_or(0);
             let cheap = c.choices.iter().filter(|o| o.cost <= least + 500).count();
-            let span =
-                c.choices.first().and_then(|o| o.seat).map_or(f64::INFINITY, |s| s.high - s.low);
+            let seats = c.choices.first().map_or(&[] as &[_], |o| &o.seats);
+            let span = seats.iter().map(|s| s.high - s.low).fold(0.0, f64::max);
+            let span = if seats.is_empty() { f64::INFINITY } else { span };
             (span, cheap)
         };
         let mut order: Vec<usize> = (0..self.choosers.len()).collect();

@@ -1,7 +1,7 @@
 //! What two candidates of different annotations pay for standing together.
 
 use super::ink::{Choice, Ink, InkKind, InkLine, whole};
-use crate::annotate::Practice;
+use crate::annotate::{Practice, Seat};
 use crate::geom::{Crossing, Line, Quad, Rect, Space, line_crossing, overlap_length};
 use crate::spec::Side;
 use crate::style::PairCosts;
@@ -30,17 +30,17 @@ pub(super) fn pair_cost<S: Space>(
         return whole(order);
     }
     // Tiers have their own distances; only what stands free of them wants more room.
-    let tiered = |c: &Choice<S>| c.seat.is_some_and(|s| s.side != Side::Inside);
+    let tiered = |c: &Choice<S>| c.seats.iter().any(|s| s.side != Side::Inside);
     let roomy = if tiered(a) && tiered(b) { 0.0 } else { practice.style.clearance.roomy };
     let cost = order
-        + texts(&a.ink, &b.ink, practice)
+        + texts(&a.ink, &b.ink, roomy, practice)
         + texts_and_lines(&a.ink, &b.ink, roomy, practice)
         + texts_and_lines(&b.ink, &a.ink, roomy, practice)
         + lines(&a.ink, &b.ink, practice);
     whole(cost)
 }
 
-fn texts<S: Space>(a: &Ink<S>, b: &Ink<S>, practice: &Practice<'_>) -> f64 {
+fn texts<S: Space>(a: &Ink<S>, b: &Ink<S>, roomy: f64, practice: &Practice<'_>) -> f64 {
     let clear = practice.style.clearance.text_text;
     let mut cost = 0.0;
     for (p, p_box) in &a.texts {
@@ -48,7 +48,7 @@ fn texts<S: Space>(a: &Ink<S>, b: &Ink<S>, practice: &Practice<'_>) -> f64 {
             let apart = p_box.distance(q_box);
             if apart < clear && p.distance(q) < clear {
                 cost += practice.style.cost.pair.text_text;
-            } else if apart < practice.style.clearance.roomy {
+            } else if apart < roomy {
                 cost += practice.style.cost.group.texts_crowded;
             }
         }
@@ -67,7 +67,10 @@ fn texts_and_lines<S: Space>(
     let mut cost = 0.0;
     for (quad, text_box) in &texts.texts {
         for l in &lines.lines {
-            let reach = clear + l.half_width;
+            let reach = match l.kind {
+                InkKind::Arrow => practice.style.clearance.text_arrow + l.half_width,
+                InkKind::Dim | InkKind::Ext | InkKind::Leader => clear,
+            };
             if text_box.distance(&l.bounds) >= roomy.max(reach) {
                 continue;
             }
@@ -171,20 +174,24 @@ fn near_parallel<S: Space>(a: &Line<S>, b: &Line<S>) -> f64 {
     if apart > LEADERS_APART { 0.0 } else { overlap_length(a, b).max(0.0) }
 }
 
-/// A longer dimension inside a shorter one on the same side, where they stand over each other.
+/// Longer dimensions inside shorter ones on the same side, where they stand over each other.
 fn tier_order<S>(a: &Choice<S>, b: &Choice<S>, practice: &Practice<'_>) -> f64 {
-    let (Some(p), Some(q)) = (a.seat, b.seat) else { return 0.0 };
+    let pairs = a.seats.iter().flat_map(|p| b.seats.iter().map(move |q| (p, q)));
+    let wrong = pairs.filter(|(p, q)| longer_inside(p, q)).count();
+    practice.style.cost.group.order_of_tiers * wrong as f64
+}
+
+fn longer_inside(p: &Seat, q: &Seat) -> bool {
     let over_each_other = p.high.min(q.high) - p.low.max(q.low) > NEIGHBOUR_STRETCH;
     if p.side != q.side || p.side == Side::Inside || !over_each_other {
-        return 0.0;
+        return false;
     }
     let (inner, outer) = match p.tier.cmp(&q.tier) {
         std::cmp::Ordering::Less => (p, q),
         std::cmp::Ordering::Greater => (q, p),
-        std::cmp::Ordering::Equal => return 0.0,
+        std::cmp::Ordering::Equal => return false,
     };
-    let longer_inside = (inner.high - inner.low) > (outer.high - outer.low) + 1e-6;
-    if longer_inside { practice.style.cost.group.order_of_tiers } else { 0.0 }
+    (inner.high - inner.low) > (outer.high - outer.low) + 1e-6
 }
 
 fn trimmed<S: Space>(line: &Line<S>, trim: f64) -> Option<Line<S>> {

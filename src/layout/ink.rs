@@ -48,8 +48,8 @@ pub(super) struct Choice<S> {
     pub cost: i64,
     /// Its ink.
     pub ink: Ink<S>,
-    /// Its place among tiers.
-    pub seat: Option<Seat>,
+    /// Its places among tiers.
+    pub seats: Vec<Seat>,
 }
 
 /// An annotation as the choice sees it.

@@ -244,7 +244,7 @@ impl<'a> Desk<'a> {
 
     /// A quick look before anything is placed: no view may be larger than the frame.
     fn outlines_fit(&self, scale: Scale, frame: &Rect<Sheet>) -> Result<(), Shortage> {
-        let inner = frame.grown(-self.practice.style.views.frame_gap);
+        let inner = frame.grown(-self.practice.style.views.frame_gap_least);
         for view in self.views {
             let k = view.scale.unwrap_or(scale).factor();
             let needed = (view.bounds.width() * k, view.bounds.height() * k);
@@ -272,7 +272,11 @@ impl<'a> Desk<'a> {
                 view: index,
                 choices: offer
                     .iter()
-                    .map(|c| Choice { cost: whole(c.cost), ink: Ink::of(&c.sketch), seat: c.seat })
+                    .map(|c| Choice {
+                        cost: whole(c.cost),
+                        ink: Ink::of(&c.sketch),
+                        seats: c.seats.clone(),
+                    })
                     .collect(),
             })
             .collect();
@@ -344,7 +348,7 @@ impl<'a> Desk<'a> {
                     .map(|(c, sketch)| {
                         let ink = Ink::of(sketch);
                         let around = surroundings.cost(&ink, view, &self.practice);
-                        Choice { cost: whole(c.cost + around), ink, seat: c.seat }
+                        Choice { cost: whole(c.cost + around), ink, seats: c.seats.clone() }
                     })
                     .collect();
                 order.push(*member);

@@ -3,6 +3,7 @@
 use std::cmp::Ordering;
 use std::fmt;
 
+use super::place;
 use super::rule::Rule;
 use crate::geom::{Rect, Sheet};
 use crate::ident::{ItemId, ViewId};
@@ -138,12 +139,11 @@ impl Finding {
 
     /// Order in a report: worst first, then by sheet, from the top and from the left.
     pub(super) fn report_order(&self, other: &Self) -> Ordering {
-        let place = |f: &Self| [f.area.min.y, f.area.min.x, f.area.max.y, f.area.max.x];
         other
             .severity
             .cmp(&self.severity)
             .then(self.sheet.cmp(&other.sheet))
-            .then_with(|| total(&place(self), &place(other)))
+            .then_with(|| place::order(&self.area, &other.area))
             .then_with(|| self.rule.name.cmp(other.rule.name))
             .then_with(|| self.items.cmp(&other.items))
             .then_with(|| self.message.cmp(&other.message))
@@ -158,9 +158,4 @@ impl Finding {
             .then_with(|| badness(other).total_cmp(&badness(self)))
             .then_with(|| self.report_order(other))
     }
-}
-
-fn total(a: &[f64], b: &[f64]) -> Ordering {
-    let unequal = a.iter().zip(b).map(|(x, y)| x.total_cmp(y)).find(|o| o.is_ne());
-    unequal.unwrap_or(Ordering::Equal)
 }

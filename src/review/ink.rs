@@ -15,9 +15,9 @@ use super::shape::{Polygon, Shape};
 use crate::geom::{Curve, Line, Path, Point, Rect, Sheet};
 use crate::scene::{Fill, Ink, Item, ItemKind, Mark, PlacedText, Role, Scene, Stroke};
 
-/// How far chords stray from the curve they stand for, mm: a fifth of the depth at which styles
-/// count a meeting, while a circle of 50 mm stays below 250 chords.
-const CHORD: f64 = 0.002;
+/// How far chords stray from the curve they stand for, mm: half of the depth at which styles count a
+/// meeting, a fiftieth of a narrow line; a circle of 50 mm then takes some 220 chords.
+const CHORD: f64 = 0.005;
 
 /// No sheet reaches this far, mm; larger coordinates would overflow in products.
 const FAR: f64 = 1e6;
@@ -52,6 +52,8 @@ pub(crate) struct Piece {
     pub(crate) bounds: Rect<Sheet>,
     /// Whether it is a whole straight curve, not a chord of a round one.
     pub(crate) straight: bool,
+    /// Number of the curve that it is a chord of; another one for every other piece.
+    pub(crate) curve: usize,
     /// Beginning and end of the open path that it belongs to.
     pub(crate) ends: Option<(Point<Sheet>, Point<Sheet>)>,
 }
@@ -63,8 +65,13 @@ pub(crate) struct InkIndex<'a> {
     tree: RTree<Leaf>,
 }
 
+/// Chords of one curve in one leaf: the tree of a sheet full of circles would otherwise be ten times
+/// as large, and slower to build than all rules are to check.
+const CHORDS_IN_LEAF: usize = 16;
+
+/// Some consecutive pieces of one curve.
 struct Leaf {
-    piece: usize,
+    pieces: std::ops::Range<usize>,
     bounds: AABB<[f64; 2]>,
 }
 
@@ -110,12 +117,7 @@ impl<'a> InkIndex<'a> {
                 item.marks.iter().for_each(|mark| index.take(i, item, mark));
             }
         }
-        let leaves = index
-            .pieces
-            .iter()
-            .enumerate()
-            .map(|(piece, p)| Leaf { piece, bounds: envelope(&p.bounds) });
-        index.tree = RTree::bulk_load(leaves.collect());
+        index.tree = RTree::bulk_load(leaves(&index.pieces));
         index
     }
 
@@ -131,16 +133,20 @@ impl<'a> InkIndex<'a> {
 
     /// The pieces whose boxes meet `area`, in no particular order.
     pub(crate) fn near(&self, area: Rect<Sheet>) -> impl Iterator<Item = &Piece> + use<'_, 'a> {
-        self.tree.locate_in_envelope_intersecting(envelope(&area)).map(|l| &self.pieces[l.piece])
+        let leaves = self.tree.locate_in_envelope_intersecting(envelope(&area));
+        leaves
+            .flat_map(|l| &self.pieces[l.pieces.clone()])
+            .filter(move |p| p.bounds.distance(&area) <= 0.0)
     }
 
     fn take(&mut self, i: usize, item: &Item, mark: &'a Mark) {
         match mark {
-            Mark::Stroke(s) if s.ink == Ink::Drawing => self.take_stroke(i, item, s),
-            Mark::Fill(f) if f.ink == Ink::Drawing => self.take_fill(i, item, f),
+            Mark::Stroke(s) if s.ink == Ink::Drawing => self.take_stroke((i, item.kind), s),
+            Mark::Fill(f) if f.ink == Ink::Drawing => self.take_fill((i, item.kind), f),
             Mark::Text(t) if t.ink == Ink::Drawing && !t.run.is_blank() => {
                 let shape = Shape::Area(Polygon::new(t.quad().0.to_vec()));
-                if self.push(i, item, Class::Text, None, shape, false, None) {
+                let look = Look { class: Class::Text, role: None, straight: false, ends: None };
+                if self.push((i, item.kind), look, [shape]) {
                     self.texts.push((self.pieces.len() - 1, t));
                 }
             }
@@ -148,22 +154,23 @@ impl<'a> InkIndex<'a> {
         }
     }
 
-    fn take_stroke(&mut self, i: usize, item: &Item, stroke: &Stroke) {
-        let class = if stroke.role == Some(Role::Arrow) { Class::Termination } else { Class::Line };
+    fn take_stroke(&mut self, of: (usize, ItemKind), stroke: &Stroke) {
+        let role = stroke.role;
+        let class = if role == Some(Role::Arrow) { Class::Termination } else { Class::Line };
         for path in &stroke.paths {
             let ends = open_ends(path);
             for curve in &path.curves {
                 let straight = matches!(curve, Curve::Line(_));
-                for pair in curve.flattened(CHORD).windows(2) {
-                    let line = Line::new(pair[0], pair[1]);
-                    let shape = Shape::Bar { line, half: stroke.width / 2.0 };
-                    self.push(i, item, class, stroke.role, shape, straight, ends);
-                }
+                let half = stroke.width / 2.0;
+                let chords = curve.flattened(CHORD);
+                let bars = chords.windows(2).map(|pair| Line::new(pair[0], pair[1]));
+                let shapes = bars.map(|line| Shape::Bar { line, half });
+                self.push(of, Look { class, role, straight, ends }, shapes);
             }
         }
     }
 
-    fn take_fill(&mut self, i: usize, item: &Item, fill: &Fill) {
+    fn take_fill(&mut self, of: (usize, ItemKind), fill: &Fill) {
         let class = if fill.role == Some(Role::Arrow) { Class::Termination } else { Class::Filled };
         for path in &fill.paths {
             let mut corners: Vec<Point<Sheet>> = Vec::new();
@@ -175,27 +182,60 @@ impl<'a> InkIndex<'a> {
             if corners.len() > 1 && corners[0].is_at(corners[corners.len() - 1]) {
                 corners.pop();
             }
-            let shape = Shape::Area(Polygon::new(corners));
-            self.push(i, item, class, fill.role, shape, false, None);
+            let look = Look { class, role: fill.role, straight: false, ends: None };
+            self.push(of, look, [Shape::Area(Polygon::new(corners))]);
         }
     }
 
-    /// Takes a piece that lies anywhere near a sheet; says whether it did.
-    #[expect(clippy::too_many_arguments, reason = "the fields of a piece, each from elsewhere")]
+    /// Takes the pieces of one curve that lie anywhere near a sheet; says whether there were any.
     fn push(
         &mut self,
-        item: usize,
-        of: &Item,
-        class: Class,
-        role: Option<Role>,
-        shape: Shape,
-        straight: bool,
-        ends: Option<(Point<Sheet>, Point<Sheet>)>,
+        (item, kind): (usize, ItemKind),
+        look: Look,
+        shapes: impl IntoIterator<Item = Shape>,
     ) -> bool {
-        let Some(bounds) = shape.bounds().filter(is_near) else { return false };
-        self.pieces.push(Piece { item, kind: of.kind, class, role, shape, bounds, straight, ends });
-        true
+        let before = self.pieces.len();
+        for shape in shapes {
+            let Some(bounds) = shape.bounds().filter(is_near) else { continue };
+            let Look { class, role, straight, ends } = look;
+            let curve = before;
+            self.pieces.push(Piece {
+                item,
+                kind,
+                class,
+                role,
+                shape,
+                bounds,
+                straight,
+                curve,
+                ends,
+            });
+        }
+        self.pieces.len() > before
     }
+}
+
+/// What the pieces of one curve have in common.
+#[derive(Clone, Copy)]
+struct Look {
+    class: Class,
+    role: Option<Role>,
+    straight: bool,
+    ends: Option<(Point<Sheet>, Point<Sheet>)>,
+}
+
+fn leaves(pieces: &[Piece]) -> Vec<Leaf> {
+    let mut leaves = Vec::new();
+    let mut first = 0;
+    for curve in pieces.chunk_by(|a, b| a.curve == b.curve) {
+        for chunk in curve.chunks(CHORDS_IN_LEAF) {
+            let bounds = Rect::union_of(chunk.iter().map(|p| p.bounds));
+            let bounds = envelope(&bounds.expect("a chunk is never empty"));
+            leaves.push(Leaf { pieces: first..first + chunk.len(), bounds });
+            first += chunk.len();
+        }
+    }
+    leaves
 }
 
 fn open_ends(path: &Path<Sheet>) -> Option<(Point<Sheet>, Point<Sheet>)> {

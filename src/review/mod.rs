@@ -1,6 +1,6 @@
 //! The checker: rules that read finished sheets, and the reports of what they find.
 //!
-//! Takes [`Scene`]s, from the pipeline or read back from issued files, with the style that they
+//! Takes [`Scene`](crate::scene::Scene)s, from the pipeline or read back from issued files, with the style that they
 //! shall follow and, where there is one, the spec; gives a [`Review`]. Rules judge the ink as it
 //! is drawn, by exact geometry. They never see how anything was placed: a mistake of the placement
 //! must not hide behind its own tables.
@@ -18,6 +18,7 @@ mod intrusion;
 mod leader;
 mod naming;
 mod page;
+mod place;
 mod registry;
 pub mod report;
 mod rule;

@@ -1,10 +1,12 @@
 //! Every rule over every sheet.
 
+use rayon::prelude::*;
+
 use super::allow::excuse;
 use super::findings::Findings;
 use super::page::Page;
 use super::rule::Check;
-use super::{Finding, Severity, rules};
+use super::{Finding, Rule, Severity, rules};
 use crate::geom::{Rect, Sheet};
 use crate::ident::{ItemId, ViewId};
 use crate::scene::{Item, Scene};
@@ -84,22 +86,26 @@ impl Review {
 #[must_use]
 pub fn review(input: &ReviewInput<'_>) -> Review {
     let pages: Vec<_> = input.scenes.iter().map(|s| Page::new(s, input.style)).collect();
-    let mut findings = Vec::new();
-    for rule in rules() {
-        let mut found = Findings::of(rule);
-        match rule.check {
-            Check::Page(check) => pages.iter().for_each(|p| check(p, &mut found)),
-            Check::Drawing(check) => check(input, &mut found),
-            Check::Allow => {}
-        }
-        findings.extend(found.into_merged());
-    }
+    // Collected in the order of the rules, however many threads there are.
+    let found: Vec<Vec<Finding>> =
+        rules().par_iter().map(|rule| check(rule, input, &pages)).collect();
+    let mut findings: Vec<Finding> = found.into_iter().flatten().collect();
     let excused = excuse(input, &mut findings);
     if let Some(drawing) = input.drawing {
         findings.iter_mut().for_each(|f| trace(f, drawing, input.scenes));
     }
     findings.sort_by(Finding::report_order);
     Review { findings, excused }
+}
+
+fn check(rule: &'static Rule, input: &ReviewInput<'_>, pages: &[Page<'_>]) -> Vec<Finding> {
+    let mut found = Findings::of(rule);
+    match rule.check {
+        Check::Page(check) => pages.iter().for_each(|p| check(p, &mut found)),
+        Check::Drawing(check) => check(input, &mut found),
+        Check::Allow => {}
+    }
+    found.into_merged()
 }
 
 /// Gives a finding its place in the spec: that of its first item that the spec writes.

@@ -58,8 +58,10 @@ impl Shape {
             (Self::Bar { line, half }, Self::Area(p))
             | (Self::Area(p), Self::Bar { line, half }) => {
                 let distance = p.distance_to(line);
-                let inside = p.part_inside(line).map_or(0.0, |l| l.length());
-                if distance > 0.0 { (half - distance).max(0.0) } else { half.max(inside) }
+                if distance > 0.0 {
+                    return (half - distance).max(0.0);
+                }
+                half.max(p.part_inside(line).map_or(0.0, |l| l.length()))
             }
             (Self::Area(a), Self::Area(b)) => a.depth(b),
         }

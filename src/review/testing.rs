@@ -130,13 +130,14 @@ impl SheetBuilder {
         self.item(id, ItemKind::Outline, view).mark(Mark::Stroke(stroke))
     }
 
-    /// A level dimension above an outline at `y`, from `x.0` to `x.1`, on a line at `line`.
+    /// A level dimension from `x.0` to `x.1` of an outline at `y`, on a line at `line`.
     pub(crate) fn dimension(self, id: &str, view: &str, x: (f64, f64), y: f64, line: f64) -> Self {
         let label = format!("{}", x.1 - x.0);
         let width = Run::new(&label, 3.5).advance;
+        let end = if line < y { line - 2.0 } else { line + 2.0 };
         self.item(id, ItemKind::Dimension, view)
-            .role(Role::Ext, (x.0, y), (x.0, line - 2.0))
-            .role(Role::Ext, (x.1, y), (x.1, line - 2.0))
+            .role(Role::Ext, (x.0, y), (x.0, end))
+            .role(Role::Ext, (x.1, y), (x.1, end))
             .role(Role::Dim, (x.0, line), (x.1, line))
             .arrow((x.0, line), 180.0)
             .arrow((x.1, line), 0.0)

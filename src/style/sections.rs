@@ -262,6 +262,8 @@ pub struct ViewSpacing {
     pub outline_gap: f64,
     /// Ink to frame.
     pub frame_gap: f64,
+    /// Ink to frame at least, where the sheet is too small for more.
+    pub frame_gap_least: f64,
     /// Ink of views to title block, tables and notes.
     pub block_gap: f64,
     /// View label above the view's ink.

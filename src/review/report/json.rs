@@ -90,3 +90,53 @@ fn entry<'a>(f: &'a Finding, sources: Option<&'a SourceMap>) -> Entry<'a> {
 fn rounded(value: f64) -> f64 {
     (value * 1000.0).round() / 1000.0 + 0.0
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::review::review;
+    use crate::review::testing::a3;
+    use crate::scene::ItemKind;
+
+    #[test]
+    fn every_key_of_the_contract_is_there() {
+        let case = a3()
+            .outline("plate", "front", (100.0, 100.0), (180.0, 150.0))
+            .item("d1", ItemKind::Dimension, "front")
+            .text("80", (140.0, 101.0))
+            .case();
+        let review = review(&case.input());
+        let text = json(&review, Some(&case.scenes[0].sheet), None);
+        let read: serde_json::Value = serde_json::from_str(&text).expect("it is JSON");
+        assert_eq!(read["drawing"], "WL-1");
+        assert!(read["revision"].is_null() && read["caution"].is_string());
+        let findings = read["findings"].as_array().expect("a list");
+        assert_eq!(findings.len(), review.findings.len());
+        for finding in findings {
+            let keys: Vec<_> = finding.as_object().expect("a table").keys().cloned().collect();
+            let mut expected = [
+                "rule", "severity", "sheet", "view", "items", "box", "amount", "unit", "message",
+                "file", "line", "column",
+            ]
+            .map(String::from);
+            expected.sort();
+            let mut keys = keys;
+            keys.sort();
+            assert_eq!(keys, expected);
+            assert_eq!(finding["box"].as_array().map(Vec::len), Some(4));
+        }
+        let on_line = findings.iter().find(|f| f["rule"] == "clutter/text-on-line");
+        let on_line = on_line.expect("the fault is reported");
+        assert_eq!(on_line["severity"], "must");
+        assert_eq!(on_line["items"], serde_json::json!(["d1", "plate"]));
+        assert_eq!((&on_line["unit"], &on_line["view"]), (&"mm".into(), &"front".into()));
+        let sum = ["must", "should", "consider"].map(|s| read["summary"][s].as_u64().unwrap_or(0));
+        assert_eq!(sum.iter().sum::<u64>(), findings.len() as u64);
+    }
+
+    #[test]
+    fn numbers_have_three_decimals_and_no_negative_zero() {
+        assert_eq!(rounded(1.234_56), 1.235);
+        assert!(rounded(-0.000_1).is_sign_positive());
+    }
+}

@@ -96,3 +96,69 @@ fn number_place(
     };
     *origins.iter().find(is_free).unwrap_or(&origins[0])
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::review::review;
+    use crate::review::testing::a3;
+
+    fn crowd() -> (Scene, Vec<Finding>) {
+        let mut sheet = a3();
+        for i in 0..12 {
+            sheet = sheet
+                .item(&format!("d{i}"), ItemKind::Dimension, "front")
+                .text("120", (100.0 + 4.0 * f64::from(i), 100.0));
+        }
+        let case = sheet.case();
+        let findings = review(&case.input()).findings;
+        (case.scenes[0].clone(), findings)
+    }
+
+    #[test]
+    fn every_finding_of_the_sheet_gets_a_box_and_its_number() {
+        let (scene, findings) = crowd();
+        let marks = marked(&scene, &findings);
+        let added: Vec<_> = marks.items[scene.items.len()..].iter().collect();
+        assert_eq!(added.len(), findings.len());
+        for (i, (item, finding)) in added.iter().zip(&findings).enumerate() {
+            assert_eq!(item.kind, ItemKind::Finding);
+            assert_eq!(item.texts().next().map(|t| t.run.text.clone()), Some((i + 1).to_string()));
+            let bounds = item.bounds().expect("a mark draws something");
+            assert!(scene.sheet.area().holds(&bounds) && bounds.contains(finding.area.centre()));
+        }
+    }
+
+    #[test]
+    fn marks_are_no_ink_of_the_drawing() {
+        let (scene, findings) = crowd();
+        let marks = marked(&scene, &findings);
+        let style = crate::style::builtin("iso").expect("compiled in");
+        let input = crate::review::ReviewInput {
+            scenes: &[marks],
+            style: &style,
+            drawing: None,
+            misfits: &[],
+            conflicts: &[],
+        };
+        assert_eq!(review(&input).findings.len(), findings.len());
+    }
+
+    #[test]
+    fn numbers_keep_clear_of_each_other_where_there_is_room() {
+        let (scene, mut findings) = crowd();
+        let spread =
+            |i: usize| Rect::from_sides(40.0 + 9.0 * i as f64, 60.0, 46.0 + 9.0 * i as f64, 64.0);
+        findings.truncate(11);
+        findings.iter_mut().enumerate().for_each(|(i, f)| f.area = spread(i));
+        let marks = marked(&scene, &findings);
+        let numbers: Vec<_> = marks.items[scene.items.len()..]
+            .iter()
+            .flat_map(Item::texts)
+            .map(|t| t.quad().bounds())
+            .collect();
+        for (i, a) in numbers.iter().enumerate() {
+            assert!(numbers[i + 1..].iter().all(|b| !a.overlaps(b)), "{i}");
+        }
+    }
+}

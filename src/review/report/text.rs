@@ -95,3 +95,50 @@ fn push_summary(out: &mut String, review: &Review) {
 fn push(out: &mut String, words: std::fmt::Arguments<'_>) {
     out.write_fmt(words).expect("writing to a string does not fail");
 }
+
+#[cfg(test)]
+mod tests {
+    use std::sync::Arc;
+
+    use super::*;
+    use crate::review::review;
+    use crate::review::testing::a3;
+    use crate::scene::ItemKind;
+    use crate::source::{FileId, Span};
+
+    #[test]
+    fn findings_stand_under_their_severity_with_place_amount_and_line() {
+        let case = a3()
+            .outline("plate", "front", (100.0, 100.0), (180.0, 150.0))
+            .item("d1", ItemKind::Dimension, "front")
+            .text("80", (140.0, 101.0))
+            .case();
+        let mut review = review(&case.input());
+        let mut sources = SourceMap::default();
+        let file = sources.add("plate.toml", Arc::from("[drawing]\n\n[[dimension]]\n"));
+        for f in &mut review.findings {
+            f.span = Some(Span { file: FileId(file.0), start: 11, end: 24 });
+        }
+        let zone = |sheet: u32, _| Some(format!("B{sheet}"));
+        let places = Places { sources: Some(&sources), zone: Some(&zone) };
+        let text = text(&review, &places);
+        assert!(text.starts_with("must\n   1  "), "{text}");
+        let (_, rest) = text.split_once("clutter/text-on-line: ").expect("the fault is reported");
+        assert!(rest.contains("\n      sheet 1 B1 at (14"), "{text}");
+        assert!(rest.contains(" mm; d1, plate\n      plate.toml:3:1\n"), "{text}");
+        assert!(text.trim_end().ends_with(CAUTION));
+    }
+
+    #[test]
+    fn an_empty_review_says_so_and_is_no_approval() {
+        let text = text(&Review::default(), &Places::default());
+        assert_eq!(text, format!("nothing found\n\n{CAUTION}\n"));
+        assert!(CAUTION.contains("no approval"));
+    }
+
+    #[test]
+    fn accepted_findings_are_counted_in_the_summary() {
+        let review = Review { findings: Vec::new(), excused: 2 };
+        assert!(text(&review, &Places::default()).starts_with("nothing found (2 accepted"));
+    }
+}

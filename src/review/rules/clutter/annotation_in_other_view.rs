@@ -30,7 +30,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice.
-    ANNOTATION_IN_OTHER_VIEW = "clutter/annotation-in-other-view", Should, worse: More, "an annotation runs into a view that is not its own";
+    ANNOTATION_IN_OTHER_VIEW = "clutter/annotation-in-other-view", Should, worse: More,
+        "an annotation runs into a view that is not its own";
     check: Check::Page(check);
     examples: bad, good;
 }

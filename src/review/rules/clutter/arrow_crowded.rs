@@ -28,7 +28,8 @@ rule! {
     /// ## Source
     /// ISO 129-1: arrows go outside where space is short. The length is common practice
     /// (`dimension.inside_arrows`).
-    ARROW_CROWDED = "clutter/arrow-crowded", Should, worse: Less, "arrowheads overlap or do not fit";
+    ARROW_CROWDED = "clutter/arrow-crowded", Should, worse: Less,
+        "arrowheads overlap or do not fit";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -43,7 +44,7 @@ struct Head<'p> {
 fn check(page: &Page<'_>, found: &mut Findings) {
     for of_item in page.ink.pieces().chunk_by(|a, b| a.item == b.item) {
         if of_item[0].kind == ItemKind::Dimension {
-            let heads: Vec<_> = of_item.iter().filter_map(|p| head(p)).collect();
+            let heads: Vec<_> = of_item.iter().filter_map(head).collect();
             if let [a, b] = heads.as_slice() {
                 do_not_fit(page, a, b, found);
             }

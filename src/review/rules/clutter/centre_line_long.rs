@@ -27,7 +27,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 128-2; the length is common practice (`review.centre_longest`).
-    CENTRE_LINE_LONG = "clutter/centre-line-long", Consider, worse: More, "a centre line runs far past its feature";
+    CENTRE_LINE_LONG = "clutter/centre-line-long", Consider, worse: More,
+        "a centre line runs far past its feature";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -29,7 +29,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1: dimension lines shall not cross one another where this can be avoided.
-    DIMENSION_LINES_CROSS = "clutter/dimension-lines-cross", Must, worse: More, "two dimension lines cross";
+    DIMENSION_LINES_CROSS = "clutter/dimension-lines-cross", Must, worse: More,
+        "two dimension lines cross";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -30,7 +30,8 @@ rule! {
     /// ## Source
     /// ISO 128-3: hatching is interrupted for lettering. The margin is the style's
     /// (`hatch.text_margin`).
-    DIMENSION_ON_HATCH = "clutter/dimension-on-hatch", Should, worse: Less, "a value on hatching without a clear margin";
+    DIMENSION_ON_HATCH = "clutter/dimension-on-hatch", Should, worse: Less,
+        "a value on hatching without a clear margin";
     check: Check::Page(check);
     examples: bad, good;
 }

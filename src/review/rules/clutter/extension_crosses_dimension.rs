@@ -31,7 +31,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1; common practice.
-    EXTENSION_CROSSES_DIMENSION = "clutter/extension-crosses-dimension", Consider, worse: More, "an extension line crosses a dimension line";
+    EXTENSION_CROSSES_DIMENSION = "clutter/extension-crosses-dimension", Consider, worse: More,
+        "an extension line crosses a dimension line";
     check: Check::Page(check);
     examples: bad, good;
 }

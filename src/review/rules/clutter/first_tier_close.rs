@@ -1,10 +1,11 @@
 //! `clutter/first-tier-close`.
 
-use crate::geom::{Rect, distance_line_line};
+use crate::geom::{Rect, Sheet, distance_line_line};
 use crate::review::Unit;
 use crate::review::dimension_line::{DimensionLine, dimension_lines};
 use crate::review::findings::Findings;
 use crate::review::page::Page;
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
@@ -27,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice: 10 mm; the distance is the style's (`first_line`).
-    FIRST_TIER_CLOSE = "clutter/first-tier-close", Should, worse: Less, "the first dimension line stands too near the outline";
+    FIRST_TIER_CLOSE = "clutter/first-tier-close", Should, worse: Less,
+        "the first dimension line stands too near the outline";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -57,7 +59,7 @@ fn nearest_outline(
     page: &Page<'_>,
     line: &DimensionLine<'_>,
     limit: f64,
-) -> Option<(f64, Rect<crate::geom::Sheet>)> {
+) -> Option<(f64, Rect<Sheet>)> {
     // Tails of outside arrows may pass over another part of the outline: only the span counts.
     let (a, b) = (line.run.at(line.span.0), line.run.at(line.span.1));
     let near = page.ink.near(Rect::new(a, b).grown(limit));
@@ -67,11 +69,7 @@ fn nearest_outline(
         let edge = p.line()?;
         Some((distance_line_line(a, b, edge.from, edge.to), p.bounds))
     });
-    distances.min_by(|(d, r), (e, s)| {
-        let place = |r: &Rect<_>| [r.min.y, r.min.x, r.max.y, r.max.x];
-        let (p, q) = (place(r), place(s));
-        d.total_cmp(e).then_with(|| p.partial_cmp(&q).unwrap_or(std::cmp::Ordering::Equal))
-    })
+    distances.min_by(|(d, r), (e, s)| d.total_cmp(e).then_with(|| place::order(r, s)))
 }
 
 #[cfg(test)]

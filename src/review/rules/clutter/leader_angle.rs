@@ -30,7 +30,8 @@ rule! {
     /// ## Source
     /// ISO 128-2: leaders are drawn at an angle to the lines around them. 30° to 60°, never under 15°:
     /// common practice (`leader.least_angle`, `leader.least_to_lines`).
-    LEADER_ANGLE = "clutter/leader-angle", Should, worse: Less, "a leader is level, upright, or parallel to hatching or outline";
+    LEADER_ANGLE = "clutter/leader-angle", Should, worse: Less,
+        "a leader is level, upright, or parallel to hatching or outline";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -25,7 +25,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 128-2, ISO 129-1; common practice.
-    LEADER_CROSSES_DIMENSION = "clutter/leader-crosses-dimension", Should, worse: More, "a leader crosses a dimension line";
+    LEADER_CROSSES_DIMENSION = "clutter/leader-crosses-dimension", Should, worse: More,
+        "a leader crosses a dimension line";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -28,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice: 60 mm (`leader.longest`).
-    LEADER_LONG = "clutter/leader-long", Consider, worse: More, "a leader is long or goes round corners";
+    LEADER_LONG = "clutter/leader-long", Consider, worse: More,
+        "a leader is long or goes round corners";
     check: Check::Page(check);
     examples: bad, good;
 }

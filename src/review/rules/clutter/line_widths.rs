@@ -32,7 +32,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 128-2: wide to narrow 2:1.
-    LINE_WIDTHS = "clutter/line-widths", Should, worse: More, "more than two line widths, or not 2:1";
+    LINE_WIDTHS = "clutter/line-widths", Should, worse: More,
+        "more than two line widths, or not 2:1";
     check: Check::Page(check);
     examples: bad, good;
 }

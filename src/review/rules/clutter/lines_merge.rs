@@ -6,6 +6,7 @@ use crate::review::findings::Findings;
 use crate::review::ink::Piece;
 use crate::review::naming::kind_words;
 use crate::review::page::{Page, is_edge};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
@@ -30,7 +31,8 @@ rule! {
     /// ## Source
     /// ISO 128-2: at least 0,7 mm between parallel lines; twice the wide line: common practice
     /// (`clearance.lines`).
-    LINES_MERGE = "clutter/lines-merge", Should, worse: Less, "parallel edges are too close to be told apart";
+    LINES_MERGE = "clutter/lines-merge", Should, worse: Less,
+        "parallel edges are too close to be told apart";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -42,12 +44,18 @@ fn check(page: &Page<'_>, found: &mut Findings) {
     for a in page.ink.pieces().iter().filter(straight) {
         for b in page.ink.near(a.bounds.grown(least)).filter(straight) {
             // The order of the two comes from their places, so that each pair is met once.
-            if !is_before(&a.bounds, &b.bounds) {
+            if !place::order(&a.bounds, &b.bounds).is_lt() {
                 continue;
             }
             let Some(clear) = white_between(page, a, b, steep) else { continue };
             if clear < least - page.limits().overlap_depth {
-                report(page, (page.item(a), page.item(b)), clear, common(a, b), found);
+                report(
+                    page,
+                    (page.item(a), page.item(b)),
+                    clear,
+                    place::between(&a.bounds, &b.bounds),
+                    found,
+                );
             }
         }
     }
@@ -77,12 +85,6 @@ fn report(
     found.report(page, &[a, b], area, message).measured(clear, Unit::Millimetre);
 }
 
-fn is_before(a: &Rect<Sheet>, b: &Rect<Sheet>) -> bool {
-    let place = |r: &Rect<Sheet>| [r.min.x, r.min.y, r.max.x, r.max.y];
-    let (p, q) = (place(a), place(b));
-    p.iter().zip(&q).map(|(x, y)| x.total_cmp(y)).find(|o| o.is_ne()).is_some_and(|o| o.is_lt())
-}
-
 /// White between two nearly parallel strokes where they face each other; `None` where they do not,
 /// or where they coincide or meet.
 fn white_between(page: &Page<'_>, a: &Piece, b: &Piece, steep: f64) -> Option<f64> {
@@ -101,17 +103,6 @@ fn white_between(page: &Page<'_>, a: &Piece, b: &Piece, steep: f64) -> Option<f6
     let (d, e) = (off(lo), off(hi));
     let meets = d.abs().min(e.abs()) <= page.limits().same_place || d.signum() != e.signum();
     (!meets).then(|| d.abs().max(e.abs()) - a.half_width() - b.half_width())
-}
-
-fn common(a: &Piece, b: &Piece) -> Rect<Sheet> {
-    a.bounds.intersection(&b.bounds).unwrap_or_else(|| {
-        Rect::from_sides(
-            a.bounds.min.x.max(b.bounds.min.x),
-            a.bounds.min.y.max(b.bounds.min.y),
-            a.bounds.max.x.min(b.bounds.max.x),
-            a.bounds.max.y.min(b.bounds.max.y),
-        )
-    })
 }
 
 /// A round edge with its item and half its width.

@@ -26,7 +26,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1; common practice.
-    ORDER_OF_TIERS = "clutter/order-of-tiers", Should, worse: More, "a longer dimension stands inside a shorter one";
+    ORDER_OF_TIERS = "clutter/order-of-tiers", Should, worse: More,
+        "a longer dimension stands inside a shorter one";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -30,7 +30,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 5457 (drawing space), ISO 7200 (title block); common practice.
-    OUTSIDE_FRAME = "clutter/outside-frame", Must, worse: More, "ink beyond the frame or on the sheet's tables";
+    OUTSIDE_FRAME = "clutter/outside-frame", Must, worse: More,
+        "ink beyond the frame or on the sheet's tables";
     check: Check::Page(check);
     examples: bad, good;
 }

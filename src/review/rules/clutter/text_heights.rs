@@ -28,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 3098-1; one height on a drawing is common practice.
-    TEXT_HEIGHTS = "clutter/text-heights", Should, worse: More, "dimensions are lettered in different heights";
+    TEXT_HEIGHTS = "clutter/text-heights", Should, worse: More,
+        "dimensions are lettered in different heights";
     check: Check::Page(check);
     examples: bad, good;
 }

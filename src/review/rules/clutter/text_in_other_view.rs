@@ -29,7 +29,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice.
-    TEXT_IN_OTHER_VIEW = "clutter/text-in-other-view", Must, worse: More, "a text stands in a view that is not its own";
+    TEXT_IN_OTHER_VIEW = "clutter/text-in-other-view", Must, worse: More,
+        "a text stands in a view that is not its own";
     check: Check::Page(check);
     examples: bad, good;
 }

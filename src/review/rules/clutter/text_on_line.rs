@@ -1,10 +1,14 @@
 //! `clutter/text-on-line`.
 
+use std::collections::BTreeMap;
+
+use crate::geom::{Rect, Sheet};
 use crate::review::Unit;
 use crate::review::findings::Findings;
 use crate::review::ink::{Class, Piece};
 use crate::review::naming::{ink_words, quoted};
 use crate::review::page::{Page, is_furniture};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 use crate::scene::ItemKind;
 #[cfg(test)]
@@ -41,23 +45,61 @@ rule! {
 
 fn check(page: &Page<'_>, found: &mut Findings) {
     for (text, placed) in page.ink.texts() {
-        for line in page.ink.near(text.bounds) {
-            if !is_about(page, text, line) || !page.overlap(text, line) {
-                continue;
-            }
-            let area = text.bounds.intersection(&line.bounds).unwrap_or(line.bounds);
-            let (of_text, of_line) = (page.item(text), page.item(line));
+        for run in runs_through(page, text).into_values() {
+            let area = text.bounds.intersection(&run.area).unwrap_or(run.area);
+            let (of_text, of_line) = (page.item(text), page.item(run.line));
             let message = format!(
                 "{} of {} runs through the text {} of {}",
-                ink_words(line),
+                ink_words(run.line),
                 of_line.id,
                 quoted(placed),
                 of_text.id,
             );
             found
                 .report(page, &[of_text, of_line], area, message)
-                .measured(text.shape.depth(&line.shape), Unit::Millimetre);
+                .measured(run.length, Unit::Millimetre);
         }
+    }
+}
+
+/// A stroke's run through a text.
+struct Run<'p> {
+    line: &'p Piece,
+    length: f64,
+    area: Rect<Sheet>,
+}
+
+/// The longest run of each item through the text. The chords of a round stroke add up.
+fn runs_through<'p>(page: &'p Page<'_>, text: &Piece) -> BTreeMap<usize, Run<'p>> {
+    let lines = page.ink.near(text.bounds).filter(|p| is_about(page, text, p));
+    let mut met: Vec<&Piece> = lines.filter(|p| page.overlap(text, p)).collect();
+    met.sort_by_key(|p| (p.item, p.curve));
+    let mut longest: BTreeMap<usize, Run<'p>> = BTreeMap::new();
+    for chords in met.chunk_by(|a, b| a.curve == b.curve) {
+        let length = length_inside(text, chords);
+        let (line, bounds) = (chords[0], chords.iter().map(|p| p.bounds));
+        let area = Rect::union_of(bounds).unwrap_or(line.bounds);
+        let run = Run { line, length, area };
+        let old = longest.get(&line.item);
+        if old.is_none_or(|o| run.is_worse_than(o)) {
+            longest.insert(line.item, run);
+        }
+    }
+    longest
+}
+
+fn length_inside(text: &Piece, chords: &[&Piece]) -> f64 {
+    let part = |p: &&Piece| text.polygon()?.part_inside(p.line()?);
+    let inside: f64 = chords.iter().filter_map(part).map(|l| l.length()).sum();
+    // A stroke whose middle stays outside grazes the text with its width.
+    chords.iter().map(|p| text.shape.depth(&p.shape)).fold(inside, f64::max)
+}
+
+impl Run<'_> {
+    /// Longer, or at equal length higher up or further left: the order of marks decides nothing.
+    fn is_worse_than(&self, other: &Self) -> bool {
+        let by_length = self.length.total_cmp(&other.length).reverse();
+        by_length.then_with(|| place::order(&self.area, &other.area)).is_lt()
     }
 }
 

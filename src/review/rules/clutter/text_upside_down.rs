@@ -27,7 +27,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1: values read from the bottom or from the right-hand side.
-    TEXT_UPSIDE_DOWN = "clutter/text-upside-down", Should, worse: More, "a text reads from the left or upside down";
+    TEXT_UPSIDE_DOWN = "clutter/text-upside-down", Should, worse: More,
+        "a text reads from the left or upside down";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -31,7 +31,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1 leaves the distances open; common practice is 7 mm to 10 mm.
-    TIER_SPACING = "clutter/tier-spacing", Should, worse: Less, "dimension lines too close or unevenly spaced";
+    TIER_SPACING = "clutter/tier-spacing", Should, worse: Less,
+        "dimension lines too close or unevenly spaced";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -126,7 +127,8 @@ fn uneven<'l, 'a: 'l>(
     found.report(page, &items, area, message).measured(most.size / least.size, Unit::Ratio);
 }
 
-/// Each line's distance to the next tier that faces it.
+/// For each line and the next one that faces it, the last step from tier to tier between them: a
+/// tier taken by a third line further along the side is a step of the same ladder.
 fn pitches<'l, 'a>(page: &Page<'a>, lines: &[&'l DimensionLine<'a>]) -> Vec<Pitch<'l, 'a>> {
     let place = page.limits().same_place;
     let mut pitches = Vec::new();
@@ -134,7 +136,12 @@ fn pitches<'l, 'a>(page: &Page<'a>, lines: &[&'l DimensionLine<'a>]) -> Vec<Pitc
         let mut next = lines[i + 1..].iter();
         let outer = next.find(|o| o.run.offset - inner.run.offset > place && faces(page, inner, o));
         if let Some(outer) = outer {
-            pitches.push(Pitch { size: outer.run.offset - inner.run.offset, inner, outer });
+            let before = lines[i..]
+                .iter()
+                .map(|l| l.run.offset)
+                .filter(|o| outer.run.offset - o > place)
+                .fold(inner.run.offset, f64::max);
+            pitches.push(Pitch { size: outer.run.offset - before, inner, outer });
         }
     }
     pitches

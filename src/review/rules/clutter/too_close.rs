@@ -2,17 +2,17 @@
 
 use std::collections::BTreeMap;
 
-use crate::geom::{Rect, Sheet};
 use crate::review::Unit;
 use crate::review::findings::Findings;
 use crate::review::ink::{Class, Piece};
 use crate::review::naming::{ink_words, kind_words, quoted};
 use crate::review::page::{Page, is_furniture};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 use crate::review::shape::{Polygon, Shape};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
-use crate::scene::ItemKind;
+use crate::scene::{Item, ItemKind, PlacedText};
 
 rule! {
     /// ## What it checks
@@ -34,7 +34,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice; the distances are those of the style (`clearance`).
-    TOO_CLOSE = "clutter/too-close", Should, worse: Less, "ink stands closer than the style's clearance";
+    TOO_CLOSE = "clutter/too-close", Should, worse: Less,
+        "ink stands closer than the style's clearance";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -48,7 +49,7 @@ struct Pair<'p> {
 
 struct Near<'p> {
     text: &'p Piece,
-    words: String,
+    placed: &'p PlacedText,
     other: &'p Piece,
     gap: f64,
     shortfall: f64,
@@ -75,8 +76,7 @@ fn near_texts(page: &Page<'_>, found: &mut Findings) {
             pair.overlaps |= page.overlap(text, other);
             let shortfall = clearance - gap;
             if pair.worst.as_ref().is_none_or(|w| is_worse(text, other, shortfall, w)) {
-                let words = quoted(placed);
-                pair.worst = Some(Near { text, words, other, gap, shortfall });
+                pair.worst = Some(Near { text, placed, other, gap, shortfall });
             }
         }
     }
@@ -86,30 +86,25 @@ fn near_texts(page: &Page<'_>, found: &mut Findings) {
 
 /// Worse by distance, then by place: the order of items decides nothing.
 fn is_worse(text: &Piece, other: &Piece, shortfall: f64, than: &Near<'_>) -> bool {
-    let place = |t: &Piece, o: &Piece| {
-        [t.bounds.min.y, t.bounds.min.x, o.bounds.min.y, o.bounds.min.x, o.bounds.max.y]
-    };
-    let (new, old) = (place(text, other), place(than.text, than.other));
-    let by_place = || new.iter().zip(&old).map(|(a, b)| a.total_cmp(b)).find(|o| o.is_ne());
-    match shortfall.total_cmp(&than.shortfall) {
-        std::cmp::Ordering::Greater => true,
-        std::cmp::Ordering::Less => false,
-        std::cmp::Ordering::Equal => by_place().is_some_and(std::cmp::Ordering::is_lt),
-    }
+    let by_distance = than.shortfall.total_cmp(&shortfall);
+    by_distance
+        .then_with(|| place::order(&text.bounds, &than.text.bounds))
+        .then_with(|| place::order(&other.bounds, &than.other.bounds))
+        .is_lt()
 }
 
 fn report(page: &Page<'_>, near: &Near<'_>, found: &mut Findings) {
     let (of_text, of_other) = (page.item(near.text), page.item(near.other));
     let message = format!(
         "the text {} of {} stands {:.2} mm from {} of {}; the style wants {:.2} mm",
-        near.words,
+        quoted(near.placed),
         of_text.id,
         near.gap,
         ink_words(near.other),
         of_other.id,
         near.gap + near.shortfall,
     );
-    let area = between(&near.text.bounds, &near.other.bounds);
+    let area = place::between(&near.text.bounds, &near.other.bounds);
     found.report(page, &[of_text, of_other], area, message).measured(near.gap, Unit::Millimetre);
 }
 
@@ -128,64 +123,59 @@ fn clearance(page: &Page<'_>, text: &Piece, other: &Piece) -> Option<f64> {
     }
 }
 
-/// The gap between two boxes as a box; their common part where they overlap.
-fn between(a: &Rect<Sheet>, b: &Rect<Sheet>) -> Rect<Sheet> {
-    let span = |a0: f64, a1: f64, b0: f64, b1: f64| (a0.max(b0), a1.min(b1));
-    let (x0, x1) = span(a.min.x, a.max.x, b.min.x, b.max.x);
-    let (y0, y1) = span(a.min.y, a.max.y, b.min.y, b.max.y);
-    Rect::from_sides(x0, y0, x1, y1)
+fn near_furniture(page: &Page<'_>, found: &mut Findings) {
+    let items = &page.scene.items;
+    for item in items.iter().filter(|i| !is_furniture(i)) {
+        near_frame(page, item, found);
+    }
+    let is_block = |i: &&Item| matches!(i.kind, ItemKind::TitleBlock | ItemKind::Table);
+    for block in items.iter().filter(is_block) {
+        near_block(page, block, found);
+    }
 }
 
-fn near_furniture(page: &Page<'_>, found: &mut Findings) {
-    let least = page.style.clearance.frame;
+fn near_frame(page: &Page<'_>, item: &Item, found: &mut Findings) {
+    let Some(b) = item.bounds() else { return };
+    let (least, slack) = (page.style.clearance.frame, page.limits().overlap_depth);
     let inner = page.frame.grown(-page.style.frame.line / 2.0);
-    for item in page.scene.items.iter().filter(|i| !is_furniture(i)) {
-        let Some(b) = item.bounds() else { continue };
-        let gap = [
-            b.min.x - inner.min.x,
-            b.min.y - inner.min.y,
-            inner.max.x - b.max.x,
-            inner.max.y - b.max.y,
-        ]
-        .into_iter()
-        .fold(f64::INFINITY, f64::min);
-        let touches_only = gap >= -page.limits().overlap_depth;
-        if touches_only && gap < least - page.limits().overlap_depth {
-            let message = format!(
-                "{} stands {gap:.2} mm from the frame; the style wants {least:.2} mm",
-                item.id
-            );
-            found.report(page, &[item], b, message).measured(gap.max(0.0), Unit::Millimetre);
+    let level = (b.min.x - inner.min.x).min(inner.max.x - b.max.x);
+    let upright = (b.min.y - inner.min.y).min(inner.max.y - b.max.y);
+    let gap = level.min(upright);
+    // Ink that reaches onto the frame is a fault of its own.
+    if gap >= -slack && gap < least - slack {
+        let gap = gap.max(0.0);
+        let message = format!(
+            "{} stands {gap:.2} mm from the frame; the style wants {least:.2} mm",
+            item.id,
+        );
+        found.report(page, &[item], b, message).measured(gap, Unit::Millimetre);
+    }
+}
+
+fn near_block(page: &Page<'_>, block: &Item, found: &mut Findings) {
+    let Some(b) = block.bounds() else { return };
+    let (least, slack) = (page.style.clearance.frame, page.limits().overlap_depth);
+    let within = Shape::Area(Polygon::new(b.corners().to_vec()));
+    // Clear distance of each item, less than 0 where it stands on the block.
+    let mut nearest: BTreeMap<usize, (f64, &Piece)> = BTreeMap::new();
+    for piece in page.ink.near(b.grown(least)).filter(|p| !is_furniture(page.item(p))) {
+        let gap = within.gap(&piece.shape) - within.depth(&piece.shape);
+        let entry = nearest.entry(piece.item).or_insert((gap, piece));
+        let nearer = gap.total_cmp(&entry.0);
+        if nearer.then_with(|| place::order(&piece.bounds, &entry.1.bounds)).is_lt() {
+            *entry = (gap, piece);
         }
     }
-    let blocks = page.scene.items.iter();
-    for block in blocks.filter(|i| matches!(i.kind, ItemKind::TitleBlock | ItemKind::Table)) {
-        let Some(b) = block.bounds() else { continue };
-        let within = Shape::Area(Polygon::new(b.corners().to_vec()));
-        let mut nearest: BTreeMap<usize, (f64, &Piece)> = BTreeMap::new();
-        for piece in page.ink.near(b.grown(least)).filter(|p| !is_furniture(page.item(p))) {
-            let gap = within.gap(&piece.shape) - within.depth(&piece.shape);
-            let entry = nearest.entry(piece.item).or_insert((gap, piece));
-            if gap < entry.0 {
-                *entry = (gap, piece);
-            }
-        }
-        for (gap, piece) in nearest.into_values() {
-            let slack = page.limits().overlap_depth;
-            if gap < -slack || gap >= least - slack {
-                continue;
-            }
-            let item = page.item(piece);
-            let message = format!(
-                "{} stands {:.2} mm from {}; the style wants {least:.2} mm",
-                item.id,
-                gap.max(0.0),
-                kind_words(block.kind),
-            );
-            found
-                .report(page, &[item, block], between(&piece.bounds, &b), message)
-                .measured(gap.max(0.0), Unit::Millimetre);
-        }
+    for (gap, piece) in nearest.into_values().filter(|(g, _)| *g >= -slack && *g < least - slack) {
+        let (item, gap) = (page.item(piece), gap.max(0.0));
+        let message = format!(
+            "{} stands {gap:.2} mm from {}; the style wants {least:.2} mm",
+            item.id,
+            kind_words(block.kind),
+        );
+        found
+            .report(page, &[item, block], place::between(&piece.bounds, &b), message)
+            .measured(gap, Unit::Millimetre);
     }
 }
 

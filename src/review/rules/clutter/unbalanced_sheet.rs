@@ -28,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice; the shares are the style's.
-    UNBALANCED_SHEET = "clutter/unbalanced-sheet", Consider, worse: More, "the sheet is heavy on one side, nearly empty or full";
+    UNBALANCED_SHEET = "clutter/unbalanced-sheet", Consider, worse: More,
+        "the sheet is heavy on one side, nearly empty or full";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -5,6 +5,7 @@ use crate::ident::ViewId;
 use crate::review::findings::Findings;
 use crate::review::ink::Piece;
 use crate::review::page::{Page, ViewInk};
+use crate::review::place;
 use crate::review::rule::{Check, rule};
 #[cfg(test)]
 use crate::review::testing::{Case, a3};
@@ -28,7 +29,8 @@ rule! {
     ///
     /// ## Source
     /// Common practice; the distance is the style's (`clearance.view_view`).
-    VIEW_TOO_CLOSE = "clutter/view-too-close", Should, worse: Less, "views stand closer than their annotations need";
+    VIEW_TOO_CLOSE = "clutter/view-too-close", Should, worse: Less,
+        "views stand closer than their annotations need";
     check: Check::Page(check);
     examples: bad, good;
 }
@@ -46,7 +48,9 @@ fn check(page: &Page<'_>, found: &mut Findings) {
             let nested = parts.and_then(|(a, b)| a.intersection(&b));
             let meets = gap <= 0.0 || nested.is_some();
             if meets || gap < least - page.limits().overlap_depth {
-                let place = nested.unwrap_or(area);
+                // Which of many meetings is met first depends on the order of items: take them all.
+                let common = nested.or_else(|| all.intersection(other_all));
+                let place = if meets { common.unwrap_or(area) } else { area };
                 report(page, (id, other_id), if meets { 0.0 } else { gap }, place, found);
             }
         }
@@ -98,8 +102,8 @@ fn nearest(
                 // Ink that only touches is as near as can be, and does not run into the other.
                 piece.shape.gap(&foe.shape).max(f64::MIN_POSITIVE)
             };
-            let area = between(&piece.bounds, &foe.bounds);
-            if gap < best.0 || gap == best.0 && is_above(&area, &best.1) {
+            let area = place::between(&piece.bounds, &foe.bounds);
+            if gap < best.0 || gap == best.0 && place::order(&area, &best.1).is_lt() {
                 best = (gap, area);
             }
         }
@@ -108,19 +112,6 @@ fn nearest(
         }
     }
     best
-}
-
-fn is_above(a: &Rect<Sheet>, b: &Rect<Sheet>) -> bool {
-    (a.min.y, a.min.x, a.max.y, a.max.x) < (b.min.y, b.min.x, b.max.y, b.max.x)
-}
-
-fn between(a: &Rect<Sheet>, b: &Rect<Sheet>) -> Rect<Sheet> {
-    Rect::from_sides(
-        a.min.x.max(b.min.x),
-        a.min.y.max(b.min.y),
-        a.max.x.min(b.max.x),
-        a.max.y.min(b.max.y),
-    )
 }
 
 #[cfg(test)]

@@ -23,7 +23,8 @@ rule! {
     ///
     /// ## Source
     /// The project's own.
-    ALLOW_UNKNOWN_RULE = "content/allow-unknown-rule", Must, worse: More, "an accepted finding names no rule";
+    ALLOW_UNKNOWN_RULE = "content/allow-unknown-rule", Must, worse: More,
+        "an accepted finding names no rule";
     check: Check::Allow;
     examples: bad, good;
 }

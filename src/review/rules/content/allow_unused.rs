@@ -24,7 +24,8 @@ rule! {
     ///
     /// ## Source
     /// The project's own.
-    ALLOW_UNUSED = "content/allow-unused", Should, worse: More, "an accepted finding does not occur";
+    ALLOW_UNUSED = "content/allow-unused", Should, worse: More,
+        "an accepted finding does not occur";
     check: Check::Allow;
     examples: bad, good;
 }

@@ -1,5 +1,8 @@
 //! `content/dimension-double`.
 
+use std::collections::BTreeSet;
+
+use crate::geom::Rect;
 use crate::review::Unit;
 use crate::review::dimension_line::{DimensionLine, dimension_lines};
 use crate::review::findings::Findings;
@@ -12,8 +15,8 @@ use crate::scene::{Item, ValueUnit};
 rule! {
     /// ## What it checks
     /// Two dimensions of one view measure the same stretch in the same direction and say the same
-    /// value, and neither stands in brackets as a reference. The amount is how many such dimensions
-    /// there are.
+    /// value, and neither stands in brackets as a reference. All that say one size are one finding; the
+    /// amount is how many they are.
     ///
     /// ## Why it matters
     /// At the next change one of the two is forgotten. Then the drawing says two things.
@@ -41,18 +44,32 @@ fn check(page: &Page<'_>, found: &mut Findings) {
             .then(a.span.0.total_cmp(&b.span.0))
             .then_with(|| page.scene.items[a.item].id.cmp(&page.scene.items[b.item].id))
     });
-    for (i, a) in lines.iter().enumerate() {
-        let near = lines[i + 1..].iter().take_while(|b| {
-            a.view == b.view && a.is_parallel_to(b) && b.span.0 - a.span.0 <= place
-        });
-        for b in near.filter(|b| (b.span.1 - a.span.1).abs() <= place && same_value(page, a, b)) {
-            let mut items = [a, b].map(|l| &page.scene.items[l.item]);
-            items.sort_by(|x, y| x.id.cmp(&y.id));
-            let message = format!("{} and {} give the same size twice", items[0].id, items[1].id);
-            found
-                .report(page, &items, a.area().union(b.area()), message)
-                .measured(2.0, Unit::Count);
+    let mut told: BTreeSet<usize> = BTreeSet::new();
+    for (i, first) in lines.iter().enumerate() {
+        if told.contains(&first.item) {
+            continue;
         }
+        let near = lines[i + 1..].iter().take_while(|l| {
+            first.view == l.view && first.is_parallel_to(l) && l.span.0 - first.span.0 <= place
+        });
+        let same =
+            near.filter(|l| (l.span.1 - first.span.1).abs() <= place && same_value(page, first, l));
+        let group: Vec<_> = std::iter::once(first).chain(same).collect();
+        if group.len() > 1 {
+            told.extend(group.iter().map(|l| l.item));
+            report(page, &group, found);
+        }
+    }
+}
+
+fn report(page: &Page<'_>, group: &[&DimensionLine<'_>], found: &mut Findings) {
+    let mut items: Vec<_> = group.iter().map(|l| &page.scene.items[l.item]).collect();
+    items.sort_by(|a, b| a.id.cmp(&b.id));
+    let ids: Vec<_> = items.iter().map(|i| i.id.as_str()).collect();
+    let message = format!("{} give one size", ids.join(" and "));
+    if let Some(area) = Rect::union_of(group.iter().map(|l| l.area())) {
+        let finding = found.report(page, &items, area, message);
+        finding.measured(items.len() as f64, Unit::Count);
     }
 }
 

@@ -26,7 +26,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 8015, ISO 2768-1; common practice.
-    GENERAL_TOLERANCE_MISSING = "content/general-tolerance-missing", Must, worse: More, "sizes without any tolerance";
+    GENERAL_TOLERANCE_MISSING = "content/general-tolerance-missing", Must, worse: More,
+        "sizes without any tolerance";
     check: Check::Drawing(check);
     examples: bad, good;
 }

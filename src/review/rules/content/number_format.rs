@@ -25,7 +25,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 129-1 and ISO 80000-1 (comma, leading zero); the style's `number` section.
-    NUMBER_FORMAT = "content/number-format", Should, worse: More, "a number is written against the style";
+    NUMBER_FORMAT = "content/number-format", Should, worse: More,
+        "a number is written against the style";
     check: Check::Page(check);
     examples: bad, good;
 }

@@ -25,7 +25,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 5456-2, ISO 128-3.
-    PROJECTION_SIGN_MISSING = "content/projection-sign-missing", Must, worse: More, "no projection sign on the first sheet";
+    PROJECTION_SIGN_MISSING = "content/projection-sign-missing", Must, worse: More,
+        "no projection sign on the first sheet";
     check: Check::Drawing(check);
     examples: bad, good;
 }

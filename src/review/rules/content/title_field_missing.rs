@@ -25,7 +25,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 7200: mandatory fields.
-    TITLE_FIELD_MISSING = "content/title-field-missing", Must, worse: More, "a mandatory title-block field is empty";
+    TITLE_FIELD_MISSING = "content/title-field-missing", Must, worse: More,
+        "a mandatory title-block field is empty";
     check: Check::Drawing(check);
     examples: bad, good;
 }

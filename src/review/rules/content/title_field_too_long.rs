@@ -29,7 +29,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 7200: recommended numbers of characters.
-    TITLE_FIELD_TOO_LONG = "content/title-field-too-long", Should, worse: More, "a text does not fit its cell";
+    TITLE_FIELD_TOO_LONG = "content/title-field-too-long", Should, worse: More,
+        "a text does not fit its cell";
     check: Check::Drawing(check);
     examples: bad, good;
 }

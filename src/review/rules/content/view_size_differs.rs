@@ -28,7 +28,8 @@ rule! {
     ///
     /// ## Source
     /// ISO 128-3, ISO 5456-2: orthographic views show one object.
-    VIEW_SIZE_DIFFERS = "content/view-size-differs", Must, worse: More, "views show one part in different sizes";
+    VIEW_SIZE_DIFFERS = "content/view-size-differs", Must, worse: More,
+        "views show one part in different sizes";
     check: Check::Drawing(check);
     examples: bad, good;
 }
