@@ -16,7 +16,7 @@ const ALLOWED: &[(&str, &[&str])] = &[
     ("spec", &["units", "ident", "geom", "source", "text", "style"]),
     ("view", &["units", "ident", "geom", "source", "style", "spec"]),
     ("scene", &["units", "ident", "geom", "text"]),
-    ("sheet", &["units", "ident", "geom", "standards", "text", "style", "spec", "scene"]),
+    ("sheet", &["units", "ident", "geom", "source", "standards", "text", "style", "spec", "scene"]),
     ("annotate", &["units", "ident", "geom", "source", "text", "style", "spec", "view", "scene"]),
     (
         "layout",

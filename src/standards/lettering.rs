@@ -12,24 +12,6 @@ pub fn is_nominal(height: f64) -> bool {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::style::builtin;
-
-    #[test]
-    fn every_height_of_the_iso_style_is_nominal() {
-        let style = builtin("iso").expect("compiled in");
-        let block = &style.title_block;
-        let mut heights = vec![block.name_text, block.own_text, style.revision_table.text];
-        heights.extend(block.cell.iter().map(|c| c.text));
-        heights.extend(&block.heights);
-        heights.push(style.frame.zone.text);
-        for g in &style.group {
-            heights.extend([g.text, g.label]);
-            heights.extend([style.notes.text_h * g.text, style.notes.heading_h * g.text]);
-        }
-        for h in heights {
-            assert!(is_nominal(h), "{h}");
-        }
-    }
 
     #[test]
     fn other_heights_are_not_nominal() {

@@ -27,36 +27,6 @@ pub fn group(wide: f64) -> Option<LineGroup> {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::style::builtin;
-
-    #[test]
-    fn every_group_of_the_iso_style_is_one_of_the_standard() {
-        let style = builtin("iso").expect("compiled in");
-        for g in &style.group {
-            let standard = group(g.wide).expect("the wide line names a group");
-            assert_eq!((g.narrow, g.lettering), (standard.narrow, standard.lettering));
-        }
-    }
-
-    #[test]
-    fn every_width_of_the_sheet_is_of_the_series() {
-        let style = builtin("iso").expect("compiled in");
-        let (frame, block, table) = (&style.frame, &style.title_block, &style.revision_table);
-        let widths = [
-            frame.line,
-            frame.border_line,
-            frame.centring_line,
-            block.line,
-            block.inner_line,
-            block.sign.line,
-            block.sign.axis,
-            table.line,
-            table.inner_line,
-        ];
-        for width in widths {
-            assert!(WIDTHS.iter().any(|w| (w - width).abs() < 1e-9), "{width}");
-        }
-    }
 
     #[test]
     fn widths_outside_the_series_name_no_group() {

@@ -24,7 +24,6 @@ pub fn is_preferred(scale: Scale) -> bool {
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::style::builtin;
 
     fn scale(text: &str) -> Scale {
         text.parse().expect("a scale")
@@ -38,13 +37,5 @@ mod tests {
         for other in ["1:3", "1:4", "1:2.5", "100:1", "1:20000", "3:2"] {
             assert!(!is_preferred(scale(other)), "{other}");
         }
-    }
-
-    #[test]
-    fn the_iso_style_chooses_among_preferred_scales_from_the_largest() {
-        let style = builtin("iso").expect("compiled in");
-        let factors: Vec<f64> = style.scales.iter().map(|s| scale(s).factor()).collect();
-        assert!(style.scales.iter().all(|s| is_preferred(scale(s))));
-        assert!(factors.windows(2).all(|w| w[0] > w[1]));
     }
 }

@@ -56,22 +56,3 @@ const fn size(
 ) -> SheetSize {
     SheetSize { name, short, long, upright: false, long_fields, short_fields }
 }
-
-#[cfg(test)]
-mod tests {
-    use super::*;
-    use crate::style::builtin;
-
-    #[test]
-    fn the_iso_style_has_these_sizes() {
-        let style = builtin("iso").expect("compiled in");
-        assert_eq!(style.format.len(), SHEETS.len());
-        for sheet in &SHEETS {
-            let format =
-                style.format.iter().find(|f| f.name == sheet.name).expect("the style has it");
-            let lying = (sheet.long, sheet.short);
-            let expected = if sheet.upright { (sheet.short, sheet.long) } else { lying };
-            assert_eq!((format.width, format.height), expected, "{}", sheet.name);
-        }
-    }
-}

@@ -5,6 +5,8 @@
 //! keys ending in `_h` are multiples of the lettering height of the sheet's group. A style is
 //! read once and then only looked at.
 
+#[cfg(test)]
+mod against_standards;
 mod builtin;
 mod cost;
 mod format;
