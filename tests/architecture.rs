@@ -29,7 +29,7 @@ const ALLOWED: &[(&str, &[&str])] = &[
         "compose",
         &["units", "ident", "geom", "text", "style", "spec", "view", "scene", "annotate", "layout"],
     ),
-    ("render", &["units", "geom", "text", "scene"]),
+    ("render", &["units", "ident", "geom", "text", "scene"]),
     (
         "review",
         &[

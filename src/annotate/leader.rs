@@ -145,8 +145,12 @@ fn tips(target: &Target, degrees: f64, ground: &Ground<'_>) -> Vec<(Point<Paper>
             if angle < ground.practice.style.leader.least_to_lines {
                 return Vec::new();
             }
-            [(0.5, 0.0), (0.3, 0.5), (0.7, 0.5), (0.12, 1.0), (0.88, 1.0)]
+            // On a short edge, as of a chamfer, only its middle tells it from its neighbours.
+            let roomy = edge.length() > 2.0 * ground.practice.arrow();
+            let places = [(0.5, 0.0), (0.3, 0.5), (0.7, 0.5), (0.12, 1.0), (0.88, 1.0)];
+            places
                 .into_iter()
+                .take(if roomy { places.len() } else { 1 })
                 .map(|(t, cost)| (edge.at(t), cost))
                 .collect()
         }

@@ -273,6 +273,6 @@ mod tests {
         };
         let label = w.label(&practice);
         assert!(label.runs[0].0.y.abs() < 1e-9 && label.runs[2].0.y.abs() < 1e-9);
-        assert!(label.runs[1].0.y < -3.5);
+        assert!(label.runs[1].0.y < -practice.group.deviation);
     }
 }

@@ -20,7 +20,7 @@ struct Area {
 }
 
 /// A line this near to an arrowhead's tip, mm, is the one that the arrowhead stands on.
-const ON_TIP: f64 = 0.1;
+const ON_TIP: f64 = 0.05;
 /// A part shorter than this, mm, is not worth drawing between two gaps.
 const CRUMB: f64 = 0.3;
 
