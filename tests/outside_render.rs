@@ -249,7 +249,7 @@ impl Grey {
 
 /// How far two rasters of one sheet may differ. Anti-aliasing differs between programs by up to
 /// half a pixel's coverage along every edge; anything drawn wrongly differs by whole pixels.
-const MEAN_DIFFERENCE: f64 = 1.0;
+const MEAN_DIFFERENCE: f64 = 1.5;
 /// Grey levels beyond what stands within one pixel in the other raster. Strokes of small letters,
 /// under two pixels wide at this density, differ by up to a quarter of the scale.
 const STRAY: u8 = 72;

@@ -91,7 +91,7 @@ pub struct LinearSize {
 pub enum Hold {
     /// At a point.
     Point(Point<ViewSpace>),
-    /// At the end of a centre mark around a point; the feature reaches `reach` mm from it.
+    /// At the end of the centre lines through a point; they go round this radius (0: there are none).
     Centre(Point<ViewSpace>, f64),
     /// At the nearer end of an edge that runs square to the dimension.
     Edge(Line<ViewSpace>),

@@ -94,6 +94,19 @@ fn keep(mut all: Vec<Candidate>) -> Vec<Candidate> {
     all
 }
 
+/// Whether something that lies along `v` from the view is on the side that a pin asks for. Slanted
+/// dimensions may be asked for by either of the two sides that they face.
+pub(super) fn is_on(side: Side, v: Vector<Paper>) -> bool {
+    let towards = match side {
+        Side::Above => Vector::at_angle(90.0),
+        Side::Below => Vector::at_angle(270.0),
+        Side::Left => Vector::at_angle(180.0),
+        Side::Right => Vector::at_angle(0.0),
+        Side::Inside => return false,
+    };
+    v.dot(towards) > 0.3
+}
+
 /// The side of the view towards which `v` points, by its larger component.
 pub(super) fn side_towards(v: Vector<Paper>) -> Side {
     if v.x.abs() > v.y.abs() {

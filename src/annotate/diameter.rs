@@ -28,7 +28,7 @@ pub(super) fn candidates(
                 let cost = leader_cost(degrees, length, ground);
                 let sketch = draw(rim, degrees, length, label, ground);
                 all.push(Candidate { sketch, cost, seats: Vec::new() });
-                if 2.0 * radius >= ground.practice.style.dimension.inside_arrows * arrow * 1.6 {
+                if 2.0 * radius >= ground.practice.style.dimension.across_arrows * arrow {
                     // Both arrowheads stand on the circle itself: the plainest form, so cheaper.
                     let sketch = across(circle, degrees, length, label, ground);
                     let prize = ground.practice.style.cost.unary.leader_angle_steep;

@@ -74,7 +74,7 @@ pub(super) fn leader_cost(degrees: f64, length: f64, ground: &Ground<'_>) -> f64
     };
     let angle = if level < look.least_angle || level > 90.0 - look.least_angle {
         costs.leader_angle_off
-    } else if (level - 45.0).abs() > 7.5 {
+    } else if look.angles.first().is_some_and(|preferred| (level - preferred).abs() > 1e-6) {
         costs.leader_angle_steep
     } else {
         0.0

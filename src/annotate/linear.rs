@@ -2,7 +2,7 @@
 //! whose edges both run past it, dimension lines inside.
 
 use super::annotation::LinearSize;
-use super::candidate::{Candidate, Ground, Seat, side_towards};
+use super::candidate::{Candidate, Ground, Seat, is_on, side_towards};
 use super::member::{Axes, End, Member, Spot};
 use super::sketch::Sketch;
 use crate::spec::{Pin, Side};
@@ -15,7 +15,7 @@ pub(super) fn candidates(size: &LinearSize, pin: &Pin, ground: &Ground<'_>) -> V
     let mut all = Vec::new();
     for sign in [1.0, -1.0] {
         let side = side_towards(axes.left * sign);
-        if pin.side.is_some_and(|s| s != side) {
+        if pin.side.is_some_and(|s| !is_on(s, axes.left * sign)) {
             continue;
         }
         let base = base(&axes, &member, sign, ground);
@@ -33,8 +33,7 @@ pub(super) fn candidates(size: &LinearSize, pin: &Pin, ground: &Ground<'_>) -> V
         all.extend(inside(&member, &axes, &spots, ground));
     }
     if all.is_empty() {
-        // The pin names a side that this direction has not; a person sees it by the finding that
-        // the pin could not be kept, and the dimension still stands somewhere.
+        // Pinned inside a view whose edges leave no room for that.
         return candidates(size, &Pin { side: None, ..*pin }, ground);
     }
     all

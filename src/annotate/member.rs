@@ -105,6 +105,11 @@ impl Axes {
         bounds(r.corners().map(|p| self.across(p)))
     }
 
+    /// Whether extension lines run level or upright, as the crosses of circles do.
+    fn is_upright(&self) -> bool {
+        self.along.x.abs() < 1e-6 || self.along.y.abs() < 1e-6
+    }
+
     /// The station with the outlines in its prolongation: an extension line begins where the last
     /// of them ends, instead of running over them and through the view.
     fn prolonged(&self, mut station: Station, view: &PaperView) -> Station {
@@ -135,7 +140,17 @@ impl Axes {
             }
             Hold::Centre(p, radius) => {
                 let (t, n) = at(p);
-                Station { t, low: n, high: n, reach: on.length(radius) + overshoot, drawn: (n, n) }
+                Station {
+                    t,
+                    low: n,
+                    high: n,
+                    reach: if radius > 0.0 && self.is_upright() {
+                        on.length(radius) + overshoot
+                    } else {
+                        0.0
+                    },
+                    drawn: (n, n),
+                }
             }
             Hold::Edge(l) | Hold::Axis(l) => {
                 let ((t, a), (_, b)) = (at(l.from), at(l.to));

@@ -13,7 +13,8 @@ use crate::ident::ShapeId;
 use crate::scene::{ItemKind, Value, ValueUnit};
 use crate::source::{Diagnostic, Diagnostics, Span};
 use crate::spec::{
-    AnchorRef, AnnotationSpec, Drawing, Form, HoleNote, LineDirection, Measure, RimSize, Says, Text,
+    AnchorRef, AnnotationSpec, Drawing, Form, HoleNote, LineDirection, Measure, Pin, RimSize, Says,
+    Side, Text,
 };
 use crate::view::{Anchor, AnchorError, Measured, Size, View};
 
@@ -83,6 +84,7 @@ impl Binder<'_> {
             Says::Hole(anchor, note) => self.hole(view, anchor, note)?,
             Says::Note(anchor, texts) => self.note(view, anchor, texts)?,
         };
+        check_pin(&said.content, &spec.pin)?;
         Ok(Annotation {
             id: spec.id.clone(),
             span: spec.span,
@@ -390,6 +392,30 @@ impl Binder<'_> {
             )
         })
     }
+}
+
+/// A level dimension has no left side: a pin that asks for it cannot be kept.
+fn check_pin(content: &Content, pin: &Pin) -> Bound<()> {
+    let along = match content {
+        Content::Linear(size) => size.along,
+        Content::Chain(sizes) | Content::Baseline(sizes) => match sizes.first() {
+            Some(size) => size.along,
+            None => return Ok(()),
+        },
+        Content::Angular { .. }
+        | Content::Diameter { .. }
+        | Content::Radius { .. }
+        | Content::Leader { .. } => return Ok(()),
+    };
+    let (level, upright) = (along.y.abs() < 1e-9, along.x.abs() < 1e-9);
+    let (kind, sides) = match pin.side {
+        Some(Side::Left | Side::Right) if level => ("a level", "\"above\" or \"below\""),
+        Some(Side::Above | Side::Below) if upright => ("an upright", "\"left\" or \"right\""),
+        _ => return Ok(()),
+    };
+    let message = format!("{kind} dimension does not stand on that side");
+    let help = format!("say side = {sides}, or leave the side open");
+    Err(Box::new(Diagnostic::error(pin.span, message).help(help)))
 }
 
 fn said(content: Content, value: Option<Value>, text: String, shapes: Vec<ShapeId>) -> Said {

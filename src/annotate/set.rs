@@ -1,7 +1,7 @@
 //! Candidates of chains and baseline sets, whose members move together.
 
 use super::annotation::LinearSize;
-use super::candidate::{Candidate, Ground, Seat, side_towards};
+use super::candidate::{Candidate, Ground, Seat, is_on, side_towards};
 use super::linear::{base, level, side_cost, spots, tier_cost, tiers};
 use super::member::{Axes, End, Member, Spot, extension};
 use super::sketch::Sketch;
@@ -142,8 +142,8 @@ fn stations(members: &[Member]) -> Vec<super::member::Station> {
 
 fn sides(axes: &Axes, pin: &Pin) -> Vec<(crate::spec::Side, f64)> {
     let both = [1.0, -1.0].map(|sign| (side_towards(axes.left * sign), sign));
-    let allowed: Vec<_> =
-        both.into_iter().filter(|(s, _)| pin.side.is_none_or(|p| p == *s)).collect();
+    let asked = |sign: f64| pin.side.is_none_or(|p| is_on(p, axes.left * sign));
+    let allowed: Vec<_> = both.into_iter().filter(|(_, sign)| asked(*sign)).collect();
     if allowed.is_empty() { both.to_vec() } else { allowed }
 }
 

@@ -36,8 +36,6 @@ pub(super) struct Shortage {
     pub available: (f64, f64),
 }
 
-/// Extra distance between views that is tried, mm; the widest that fits is taken.
-const EXTRA: [f64; 5] = [20.0, 15.0, 10.0, 5.0, 0.0];
 /// Step of the search for a place, mm.
 const STEP: f64 = 2.5;
 
@@ -51,7 +49,7 @@ pub(super) fn arrange(
     let mut shortage = None;
     for margin in [spacing.frame_gap, spacing.frame_gap_least] {
         let inner = field.frame.grown(-margin);
-        for extra in EXTRA {
+        for extra in spacing.extra.iter().copied() {
             let local = relative(rooms, extra, practice);
             match settle(rooms, &local, inner, &field.blocks, practice) {
                 Ok(shifts) => return Ok(shifts),

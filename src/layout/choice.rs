@@ -5,8 +5,6 @@
 //! those in its way and all are put back in other orders. Bounded in rounds; the same result on any
 //! machine.
 
-use std::collections::BTreeMap;
-
 use super::conflict::pair_cost;
 use super::ink::Chooser;
 use crate::annotate::Practice;
@@ -270,22 +268,6 @@ impl<'a, S: Space> Problem<'a, S> {
             *cell = pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
         }
         *cell
-    }
-
-    /// What the picks cost in all, 1/100, and which annotations keep a conflict with which.
-    pub(super) fn verdict(&mut self, picks: &[usize]) -> (i64, BTreeMap<usize, Vec<usize>>) {
-        let hard = super::ink::whole(self.practice.style.cost.hard);
-        let mut total: i64 = picks.iter().zip(self.choosers).map(|(p, c)| c.choices[*p].cost).sum();
-        let mut conflicts: BTreeMap<usize, Vec<usize>> = BTreeMap::new();
-        for index in 0..self.pairs.len() {
-            let (i, j) = self.pairs[index];
-            let cost = self.pair(index, picks[i], picks[j]);
-            total += cost;
-            if cost >= hard {
-                conflicts.entry(i).or_default().push(j);
-            }
-        }
-        (total, conflicts)
     }
 }
 

@@ -14,10 +14,6 @@ const ON_ONE_ANOTHER: f64 = 0.3;
 const SHARED_STRETCH: f64 = 0.5;
 /// So long a common stretch, mm, makes two dimension lines neighbours.
 const NEIGHBOUR_STRETCH: f64 = 1.0;
-/// Leaders within this angle, degrees, look meant to be parallel.
-const NEARLY_PARALLEL: f64 = 8.0;
-/// Leaders nearer than this, mm, and nearly parallel, are taken for one.
-const LEADERS_APART: f64 = 1.5;
 
 /// The cost of the pair in 1/100; `same_view` says whether tiers can be compared.
 pub(super) fn pair_cost<S: Space>(
@@ -134,16 +130,16 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
         return pair.dim_near;
     }
     let both_extensions = p.kind == InkKind::Ext && q.kind == InkKind::Ext;
-    if both_extensions && side_by_side(&p.line, &q.line) {
+    if both_extensions && side_by_side(&p.line, &q.line, practice) {
         return practice.style.cost.group.extensions_close;
     }
     if both_leaders {
         let (a, b) = (&p.line, &q.line);
-        if distance_line_line(a.from, a.to, b.from, b.to) < LEADERS_APART / 2.0 {
+        if distance_line_line(a.from, a.to, b.from, b.to) < practice.style.clearance.apart / 2.0 {
             // One that touches another's elbow reads like one that crosses it.
             return pair.leader_leader;
         }
-        return near_parallel(&p.line, &q.line)
+        return near_parallel(&p.line, &q.line, practice)
             * practice.style.cost.group.leaders_near_parallel_per_mm;
     }
     0.0
@@ -176,23 +172,24 @@ fn neighbours<S: Space>(a: &Line<S>, b: &Line<S>, pitch: f64) -> bool {
 }
 
 /// Whether two lines run beside each other so near that they look like one or like a mistake.
-fn side_by_side<S: Space>(a: &Line<S>, b: &Line<S>) -> bool {
+fn side_by_side<S: Space>(a: &Line<S>, b: &Line<S>, practice: &Practice<'_>) -> bool {
     let (Some(u), Some(v)) = (a.vector().unit(), b.vector().unit()) else { return false };
     let apart = (b.from - a.from).cross(u).abs();
     u.cross(v).abs() < 1e-3
         && apart > crate::geom::COINCIDENT
-        && apart < LEADERS_APART
+        && apart < practice.style.clearance.apart
         && overlap_length(a, b) > NEIGHBOUR_STRETCH
 }
 
 /// Common stretch, mm, of two leaders that run almost parallel and close together.
-fn near_parallel<S: Space>(a: &Line<S>, b: &Line<S>) -> f64 {
+fn near_parallel<S: Space>(a: &Line<S>, b: &Line<S>, practice: &Practice<'_>) -> f64 {
     let (Some(u), Some(v)) = (a.vector().unit(), b.vector().unit()) else { return 0.0 };
-    if u.cross(v).abs() > NEARLY_PARALLEL.to_radians().sin() {
+    let clear = &practice.style.clearance;
+    if u.cross(v).abs() > clear.parallel_angle.to_radians().sin() {
         return 0.0;
     }
     let apart = (b.at(0.5) - a.from).cross(u).abs();
-    if apart > LEADERS_APART { 0.0 } else { overlap_length(a, b).max(0.0) }
+    if apart > clear.apart { 0.0 } else { overlap_length(a, b).max(0.0) }
 }
 
 /// Longer dimensions inside shorter ones on the same side, where they stand over each other.

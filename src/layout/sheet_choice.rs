@@ -13,7 +13,7 @@ use crate::annotate::{
     Annotation, Candidate, Fixed, Label, PlacedLabel, Practice, Sketch, candidates, resolve,
 };
 use crate::geom::{Curve, Paper, Point, Rect, Sheet, Shift};
-use crate::ident::{ItemId, ViewId};
+use crate::ident::ViewId;
 use crate::source::{Diagnostic, Diagnostics};
 use crate::spec::{Drawing, FormatChoice, LineClass, ScaleChoice};
 use crate::style::{FormatSpec, Style};
@@ -42,8 +42,6 @@ pub struct Placed {
     pub annotation: Annotation,
     /// The drawing that was chosen.
     pub sketch: Sketch<Sheet>,
-    /// Annotations that it could not be kept clear of.
-    pub conflicts: Vec<ItemId>,
 }
 
 /// Why nothing can be laid out.
@@ -359,8 +357,6 @@ impl<'a> Desk<'a> {
         }
         let mut problem = Problem::new(&choosers, self.practice);
         let picks = problem.solve(Some(&start));
-        let (_, conflicts) = problem.verdict(&picks);
-        let id = |i: &usize| self.annotations[order[*i]].id.clone();
         let mut placed: Vec<(usize, Placed)> = order
             .iter()
             .enumerate()
@@ -368,9 +364,6 @@ impl<'a> Desk<'a> {
                 let placed = Placed {
                     annotation: self.annotations[*member].clone(),
                     sketch: sketches[i][picks[i]].clone(),
-                    conflicts: conflicts
-                        .get(&i)
-                        .map_or_else(Vec::new, |c| c.iter().map(id).collect()),
                 };
                 (*member, placed)
             })

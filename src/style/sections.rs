@@ -146,8 +146,8 @@ pub struct DimensionSpec {
     pub text_gap: f64,
     /// Most tiers on one side.
     pub tiers: u8,
-    /// Leaning of the preferred lines through a circle, degrees.
-    pub diameter_angles: Vec<f64>,
+    /// Circles of at least this many arrow lengths may be crossed by a line with two arrowheads.
+    pub across_arrows: f64,
     /// Frame round a basic value beyond its text.
     pub frame_margin_h: f64,
 }
@@ -168,7 +168,7 @@ pub struct ToleranceLook {
 #[derive(Clone, Debug, PartialEq, Deserialize)]
 #[serde(deny_unknown_fields)]
 pub struct LeaderSpec {
-    /// Angles to level that are offered, degrees.
+    /// Angles to level that are offered, degrees; the first is preferred.
     pub angles: Vec<f64>,
     /// Lengths that are offered.
     pub lengths: Vec<f64>,
@@ -228,6 +228,8 @@ pub struct ClearanceSpec {
     pub frame: f64,
     /// Ink of one view to that of another.
     pub view_view: f64,
+    /// Leaders, and extension lines, that run beside each other.
+    pub apart: f64,
     /// Parallel lines, unless twice the wide line is more.
     pub lines: f64,
     /// Lines meeting at no more than this angle run along each other, degrees.
@@ -266,6 +268,8 @@ pub struct ViewSpacing {
     pub frame_gap_least: f64,
     /// Ink of views to title block, tables and notes.
     pub block_gap: f64,
+    /// What is added to the distances between views, widest first; the first that fits is taken.
+    pub extra: Vec<f64>,
     /// View label above the view's ink.
     pub label_gap: f64,
     /// Smallest feature on paper that an automatic scale accepts.

@@ -63,7 +63,7 @@ impl Symbol {
         match self {
             Self::Diameter | Self::Square => 0.95,
             Self::Depth => 1.15,
-            Self::Counterbore | Self::Countersink => 2.15,
+            Self::Counterbore | Self::Countersink => 2.2,
         }
     }
 

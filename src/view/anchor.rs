@@ -27,11 +27,11 @@ use crate::spec::{LineDirection, SizeSign};
 pub enum Anchor {
     /// A corner, an end, a middle, a quadrant.
     Point(Point<ViewSpace>),
-    /// The centre of something round that reaches `reach` mm from it.
+    /// The centre of something round.
     Centre {
         /// The centre.
         at: Point<ViewSpace>,
-        /// Radius of the feature.
+        /// Radius of what its level and upright centre lines go round; 0 where it has none.
         reach: f64,
     },
     /// A straight edge.
@@ -105,9 +105,11 @@ impl View {
         }
         asked.each(|body| {
             let found = place(body, asked.place)?;
-            Some(match found {
-                Anchor::Centre { at, reach } => Anchor::Centre { at, reach: self.reach(at, reach) },
-                Anchor::Point(_) | Anchor::Edge(_) | Anchor::Axis(_) | Anchor::Round(_) => found,
+            Some(match (found, body) {
+                (Anchor::Centre { at, .. }, Body::Circle(_)) => {
+                    Anchor::Centre { at, reach: self.cross_radius(at) }
+                }
+                _ => found,
             })
         })
     }
@@ -138,19 +140,22 @@ impl View {
         longest.is_some_and(|l| l.vector().y.abs() > l.vector().x.abs())
     }
 
-    /// How far centre lines reach around a centre: to the rim of the largest circle about it.
-    fn reach(&self, at: Point<ViewSpace>, own: f64) -> f64 {
+    /// Radius of the largest circle about a centre that has a level and upright cross; 0 if none
+    /// has, as on a pitch circle, whose holes have radial strokes.
+    fn cross_radius(&self, at: Point<ViewSpace>) -> f64 {
         self.centres
             .iter()
             .filter_map(|c| match c {
-                CentreFeature::Cross { circle, .. } if circle.centre.is_at(at) => {
+                CentreFeature::Cross { circle, turn, single: false, .. }
+                    if circle.centre.is_at(at) && turn.rem_euclid(90.0) < 1e-6 =>
+                {
                     Some(circle.radius)
                 }
                 CentreFeature::Cross { .. }
                 | CentreFeature::Axis { .. }
                 | CentreFeature::Pitch { .. } => None,
             })
-            .fold(own, f64::max)
+            .fold(0.0, f64::max)
     }
 
     /// The shape and the members that a name begins with, and what follows.
