@@ -17,7 +17,6 @@ mod notes;
 mod projection_sign;
 mod revision_table;
 mod rulings;
-mod text_format;
 mod title_block;
 mod zone;
 

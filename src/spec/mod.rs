@@ -23,6 +23,7 @@ mod sheet;
 mod starter;
 #[cfg(test)]
 mod tests;
+mod text;
 mod views;
 
 pub use drawing::*;

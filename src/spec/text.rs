@@ -1,6 +1,6 @@
 //! Texts of a spec with their computed numbers as the style writes them.
 
-use crate::spec::{Text, TextPiece};
+use super::{Text, TextPiece};
 use crate::style::NumberSpec;
 
 impl Text {
