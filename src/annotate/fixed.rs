@@ -34,6 +34,9 @@ enum Kind {
 /// line, so no check can tell.
 const FLATNESS: f64 = 0.02;
 
+/// Chords in one stretch of a line.
+const STRETCH: usize = 8;
+
 /// Lines within this distance, in mm of paper, run on one another.
 const ON_ONE_ANOTHER: f64 = 0.3;
 
@@ -56,11 +59,7 @@ impl Fixed {
         let centres = view.centres.iter().flat_map(|c| c.lines.iter().map(|l| (Kind::Centre, l)));
         let lines = edges
             .chain(centres)
-            .filter_map(|(kind, curve)| {
-                let points = curve.flattened(FLATNESS);
-                let bounds = Rect::around(points.iter().copied())?;
-                Some(Chain { kind, points, bounds })
-            })
+            .flat_map(|(kind, curve)| chains(kind, &curve.flattened(FLATNESS)))
             .collect();
         let hatched = view
             .hatch
@@ -130,16 +129,21 @@ impl Fixed {
         let points = trace.curve.flattened(FLATNESS);
         let bounds = trace.curve.bounds();
         let trim = practice.style.cost.trim;
+        let pieces: Vec<Line<Paper>> =
+            points.windows(2).filter_map(|w| trimmed(w[0], w[1], trim)).collect();
         let mut crossings = 0usize;
         let mut on_outline = false;
         for chain in self.lines.iter().filter(|c| c.kind == Kind::Outline) {
             if chain.bounds.distance(&bounds) > ON_ONE_ANOTHER {
                 continue;
             }
-            for piece in points.windows(2) {
-                let Some(own) = trimmed(piece[0], piece[1], trim) else { continue };
+            for own in &pieces {
+                let near = Rect::new(own.from, own.to);
+                if near.distance(&chain.bounds) > ON_ONE_ANOTHER {
+                    continue;
+                }
                 for w in chain.points.windows(2) {
-                    match line_crossing(&own, &Line::new(w[0], w[1]), ON_ONE_ANOTHER) {
+                    match line_crossing(own, &Line::new(w[0], w[1]), ON_ONE_ANOTHER) {
                         Crossing::At { .. } => crossings += 1,
                         Crossing::Along { length } if length > 0.5 => on_outline = true,
                         Crossing::Along { .. } | Crossing::Apart => {}
@@ -185,7 +189,9 @@ impl Fixed {
             let d = (direction.angle() - other).rem_euclid(180.0);
             d.min(180.0 - d) < least
         };
-        let touching = self.lines.iter().filter(|c| c.kind == Kind::Outline).any(|c| {
+        let near_tip = Rect::new(tip, tip).grown(ON_ONE_ANOTHER);
+        let outlines = self.lines.iter().filter(|c| c.kind == Kind::Outline);
+        let touching = outlines.filter(|c| c.bounds.distance(&near_tip) <= 0.0).any(|c| {
             c.points.windows(2).any(|w| {
                 distance_line_line(tip, tip, w[0], w[1]) < ON_ONE_ANOTHER
                     && w[0].distance(w[1]) > 1.0
@@ -229,6 +235,19 @@ impl Fixed {
             })
             .map(|(_, _, angle)| *angle)
     }
+}
+
+/// A flattened line in short stretches, so that a box tells most questions apart.
+fn chains(kind: Kind, points: &[Point<Paper>]) -> Vec<Chain> {
+    let last = points.len().saturating_sub(1);
+    (0..last)
+        .step_by(STRETCH)
+        .filter_map(|i| {
+            let points = points[i..=(i + STRETCH).min(last)].to_vec();
+            let bounds = Rect::around(points.iter().copied())?;
+            Some(Chain { kind, points, bounds })
+        })
+        .collect()
 }
 
 /// The line without `trim` mm at both ends; `None` if nothing is left.

@@ -118,7 +118,8 @@ impl<S: Space> Vector<S> {
     /// Length in mm.
     #[must_use]
     pub fn length(self) -> f64 {
-        self.x.hypot(self.y)
+        // Not `hypot`: sheet sizes are far from overflow, and this is the hottest line of a layout.
+        (self.x * self.x + self.y * self.y).sqrt()
     }
 
     /// The same direction with length 1; `None` for a displacement too short to have one.

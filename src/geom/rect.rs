@@ -121,7 +121,7 @@ impl<S: Space> Rect<S> {
     pub fn distance(&self, other: &Self) -> f64 {
         let dx = (other.min.x - self.max.x).max(self.min.x - other.max.x).max(0.0);
         let dy = (other.min.y - self.max.y).max(self.min.y - other.max.y).max(0.0);
-        dx.hypot(dy)
+        (dx * dx + dy * dy).sqrt()
     }
 
     /// The four corners, walking around the box.

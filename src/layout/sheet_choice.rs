@@ -3,9 +3,12 @@
 
 use std::sync::Arc;
 
+use rayon::prelude::*;
+
 use super::Layout;
 use super::arrange::{Field, Room, Shortage, arrange};
 use super::choice::Problem;
+use super::conflict::pair_cost;
 use super::grid::stands;
 use super::ink::{Choice, Chooser, Ink, whole};
 use super::surroundings::Surroundings;
@@ -215,7 +218,8 @@ impl<'a> Desk<'a> {
         let furniture =
             crate::sheet::furniture(self.drawing, &facts, self.practice.style, self.format);
         self.outlines_fit(scale, &furniture.frame)?;
-        let alone: Vec<Alone> = (0..self.views.len()).map(|i| self.alone(i, scale)).collect();
+        let alone: Vec<Alone> =
+            (0..self.views.len()).into_par_iter().map(|i| self.alone(i, scale)).collect();
         let stands = stands(self.views, self.practice.style.projection);
         let rooms: Vec<Room> = alone
             .iter()
@@ -332,44 +336,71 @@ impl<'a> Desk<'a> {
             blocks: field.blocks.clone(),
             views: alone.iter().zip(shifts).map(|(a, s)| s.rect(&a.paper.outline)).collect(),
         };
-        let mut order = Vec::new();
-        let mut sketches = Vec::new();
-        let mut choosers = Vec::new();
-        let mut start = Vec::new();
-        for (view, (a, shift)) in alone.iter().zip(shifts).enumerate() {
-            for ((member, offer), pick) in a.members.iter().zip(&a.offers).zip(&a.picks) {
-                let drawn: Vec<Sketch<Sheet>> =
-                    offer.iter().map(|c| c.sketch.on_sheet(shift)).collect();
-                let choices = offer
-                    .iter()
-                    .zip(&drawn)
-                    .map(|(c, sketch)| {
-                        let ink = Ink::of(sketch);
-                        let around = surroundings.cost(&ink, view, &self.practice);
-                        Choice { cost: whole(c.cost + around), ink, seats: c.seats.clone() }
-                    })
-                    .collect();
-                order.push(*member);
-                sketches.push(drawn);
-                choosers.push(Chooser { view, choices });
-                start.push(*pick);
-            }
-        }
-        let mut problem = Problem::new(&choosers, self.practice);
-        let picks = problem.solve(Some(&start));
-        let mut placed: Vec<(usize, Placed)> = order
-            .iter()
-            .enumerate()
-            .map(|(i, member)| {
-                let placed = Placed {
-                    annotation: self.annotations[*member].clone(),
-                    sketch: sketches[i][picks[i]].clone(),
-                };
-                (*member, placed)
+        // What stands clear of everything else is a rest point already: more neighbours can only
+        // make the other candidates dearer.
+        let picks = match self.is_clear(alone, shifts, &surroundings) {
+            true => alone.iter().flat_map(|a| a.picks.clone()).collect(),
+            false => self.placed_anew(alone, shifts, &surroundings),
+        };
+        let members = alone.iter().zip(shifts).flat_map(|(a, shift)| {
+            a.members.iter().zip(&a.offers).map(move |(member, offer)| (*member, offer, shift))
+        });
+        let mut placed: Vec<(usize, Placed)> = members
+            .zip(picks)
+            .map(|((member, offer, shift), pick)| {
+                let annotation = self.annotations[member].clone();
+                (member, Placed { annotation, sketch: offer[pick].sketch.on_sheet(shift) })
             })
             .collect();
         placed.sort_by_key(|(member, _)| *member);
         placed.into_iter().map(|(_, p)| p).collect()
+    }
+
+    /// Whether the annotations as placed alone meet nothing outside their views.
+    fn is_clear(&self, alone: &[Alone], shifts: &[Shift], surroundings: &Surroundings) -> bool {
+        let picked: Vec<(usize, Choice<Sheet>)> = alone
+            .iter()
+            .zip(shifts)
+            .enumerate()
+            .flat_map(|(view, (a, shift))| {
+                a.offers.iter().zip(&a.picks).map(move |(offer, pick)| {
+                    let c = &offer[*pick];
+                    let ink = Ink::of(&c.sketch.on_sheet(shift));
+                    (view, Choice { cost: whole(c.cost), ink, seats: c.seats.clone() })
+                })
+            })
+            .collect();
+        picked.iter().enumerate().all(|(i, (view, c))| {
+            let others = picked[..i].iter().filter(|(other, _)| other != view);
+            surroundings.cost(&c.ink, *view, &self.practice) <= 0.0
+                && others.map(|(_, o)| pair_cost(c, o, false, &self.practice)).all(|cost| cost <= 0)
+        })
+    }
+
+    /// The picks of all annotations, view after view, chosen among everything on the sheet.
+    fn placed_anew(
+        &self,
+        alone: &[Alone],
+        shifts: &[Shift],
+        surroundings: &Surroundings,
+    ) -> Vec<usize> {
+        let mut choosers = Vec::new();
+        let mut start = Vec::new();
+        for (view, (a, shift)) in alone.iter().zip(shifts).enumerate() {
+            for (offer, pick) in a.offers.iter().zip(&a.picks) {
+                let choices = offer
+                    .iter()
+                    .map(|c| {
+                        let ink = Ink::of(&c.sketch.on_sheet(shift));
+                        let around = surroundings.cost(&ink, view, &self.practice);
+                        Choice { cost: whole(c.cost + around), ink, seats: c.seats.clone() }
+                    })
+                    .collect();
+                choosers.push(Chooser { view, choices });
+                start.push(*pick);
+            }
+        }
+        Problem::new(&choosers, self.practice).solve(Some(&start))
     }
 
     fn placed_views(

@@ -1,7 +1,7 @@
 //! The bundled font: glyph numbers, advances, outlines and ink boxes in shares of the capital
 //! height.
 
-use std::sync::LazyLock;
+use std::sync::{LazyLock, OnceLock};
 
 use kurbo::{BezPath, Shape};
 use skrifa::instance::{LocationRef, Size};
@@ -25,13 +25,27 @@ pub struct Lettering {
     font: FontRef<'static>,
     units_per_h: f64,
     units_per_em: f64,
+    /// Advance and ink of each glyph, looked up once: a layout measures hundreds of texts.
+    measures: Vec<OnceLock<Measure>>,
+}
+
+/// Advance and ink box of a glyph in h.
+#[derive(Clone, Copy)]
+struct Measure {
+    advance: f64,
+    ink: Option<kurbo::Rect>,
 }
 
 static BUNDLED: LazyLock<Lettering> = LazyLock::new(|| {
     let font = FontRef::new(FONT_TTF).expect("the bundled font is a sound TrueType file");
     let metrics = font.metrics(Size::unscaled(), LocationRef::default());
     let cap = metrics.cap_height.map_or(735.0, f64::from);
-    Lettering { font, units_per_h: cap, units_per_em: f64::from(metrics.units_per_em) }
+    Lettering {
+        font,
+        units_per_h: cap,
+        units_per_em: f64::from(metrics.units_per_em),
+        measures: (0..metrics.glyph_count).map(|_| OnceLock::new()).collect(),
+    }
 });
 
 impl Lettering {
@@ -57,9 +71,21 @@ impl Lettering {
     /// Advance width of a glyph in h.
     #[must_use]
     pub fn advance(&self, glyph: GlyphId) -> f64 {
-        let metrics = self.font.glyph_metrics(Size::unscaled(), LocationRef::default());
-        let units = metrics.advance_width(skrifa::GlyphId::new(u32::from(glyph.0)));
-        f64::from(units.unwrap_or(0.0)) / self.units_per_h
+        self.measure(glyph).advance
+    }
+
+    fn measure(&self, glyph: GlyphId) -> Measure {
+        let read = || {
+            let metrics = self.font.glyph_metrics(Size::unscaled(), LocationRef::default());
+            let units = metrics.advance_width(skrifa::GlyphId::new(u32::from(glyph.0)));
+            let outline = self.outline(glyph);
+            Measure {
+                advance: f64::from(units.unwrap_or(0.0)) / self.units_per_h,
+                ink: (!outline.elements().is_empty()).then(|| outline.bounding_box()),
+            }
+        };
+        // Numbers beyond the font's glyphs measure as nothing.
+        self.measures.get(usize::from(glyph.0)).map_or_else(read, |m| *m.get_or_init(read))
     }
 
     /// Outline of a glyph in h, y up, origin on the base line; empty for a blank.
@@ -79,8 +105,7 @@ impl Lettering {
     /// Ink box of a glyph in h, y up; `None` for a blank.
     #[must_use]
     pub fn ink(&self, glyph: GlyphId) -> Option<kurbo::Rect> {
-        let outline = self.outline(glyph);
-        (!outline.elements().is_empty()).then(|| outline.bounding_box())
+        self.measure(glyph).ink
     }
 
     /// Font size (em) for letters of capital height `h`, in the unit of `h`.
