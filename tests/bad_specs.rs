@@ -1,7 +1,7 @@
 //! Specs that are wrong, one idea each, and what the program says about them.
 //!
 //! Every `tests/bad/<name>.toml` has a `<name>.expected` beside it: the rendered diagnostics
-//! without colour. To add a case write the spec and run `ACCEPT=1 cargo test --test bad_specs`,
+//! without colour, or the findings on the sheet that can still be made. To add a case write the spec and run `ACCEPT=1 cargo test --test bad_specs`,
 //! which prints each text that it replaces and what replaces it; read that before committing.
 
 #![expect(clippy::print_stdout, reason = "accepting shows what it replaces")]
@@ -36,7 +36,16 @@ fn said(name: &str) -> String {
     let shown = format!("tests/bad/{name}.toml");
     let drawing = spec::read_text(&shown, &text, &mut sources, &mut diagnostics);
     assert_eq!(drawing.is_none(), diagnostics.has_errors(), "{name}: errors and a drawing");
-    render(&diagnostics.into_sorted(), &sources, false)
+    // What can be read may still be faulted where views are made, anchors bound, sheets laid out,
+    // and at last by the checker.
+    let Some(drawn) = drawing.and_then(|d| witnessline::draw(d, &mut diagnostics)) else {
+        return render(&diagnostics.into_sorted(), &sources, false);
+    };
+    let mut said = render(&diagnostics.into_sorted(), &sources, false);
+    for f in witnessline::check(&drawn).findings {
+        said += &format!("{}: {}: {}\n", f.severity, f.rule.name, f.message);
+    }
+    said
 }
 
 #[test]
