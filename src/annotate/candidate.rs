@@ -43,15 +43,23 @@ pub(super) struct Ground<'a> {
     pub practice: Practice<'a>,
 }
 
-/// How many candidates an annotation keeps.
-const KEPT: usize = 48;
+/// How many candidates an annotation keeps in a view with `annotations` of them. Costs of pairs grow
+/// with the square of this and memory with them, so views beyond any readable sheet get fewer.
+fn kept(annotations: usize) -> usize {
+    match annotations {
+        0..=150 => 48,
+        151..=400 => 32,
+        _ => 16,
+    }
+}
 
-/// The candidates of an annotation, cheapest first; never none.
+/// The candidates of one of `annotations` annotations of a view, cheapest first; never none.
 #[must_use]
 pub fn candidates(
     annotation: &Annotation,
     view: &PaperView,
     fixed: &Fixed,
+    annotations: usize,
     practice: Practice<'_>,
 ) -> Vec<Candidate> {
     let ground = Ground { view, on: view.placement, practice };
@@ -70,20 +78,20 @@ pub fn candidates(
     for c in &mut all {
         c.cost += fixed.cost(&c.sketch, c.seats.iter().any(|s| s.side == Side::Inside), &practice);
     }
-    keep(all)
+    keep(all, kept(annotations))
 }
 
 /// The cheapest three fifths of what is kept, and the rest evenly sampled from what follows, so
 /// that a crowded sheet still finds a place far away.
-fn keep(mut all: Vec<Candidate>) -> Vec<Candidate> {
+fn keep(mut all: Vec<Candidate>, kept: usize) -> Vec<Candidate> {
     // Stable, so equal costs stay in the order in which they were offered.
     all.sort_by(|a, b| a.cost.total_cmp(&b.cost));
-    if all.len() <= KEPT {
+    if all.len() <= kept {
         return all;
     }
-    let cheap = KEPT * 3 / 5;
+    let cheap = kept * 3 / 5;
     let rest = all.len() - cheap;
-    let sampled = KEPT - cheap;
+    let sampled = kept - cheap;
     let mut index = 0;
     all.retain(|_| {
         let i = index;

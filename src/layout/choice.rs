@@ -9,6 +9,7 @@ use super::conflict::pair_cost;
 use super::ink::Chooser;
 use crate::annotate::Practice;
 use crate::geom::{Rect, Space};
+use crate::spec::Side;
 
 /// Rounds of descent at most; on sheets of a hundred annotations some five are needed.
 const ROUNDS: usize = 24;
@@ -17,7 +18,11 @@ const ROUNDS: usize = 24;
 const PART: usize = 7;
 
 /// Not yet computed.
-const UNKNOWN: i64 = i64::MIN;
+const UNKNOWN: i32 = i32::MIN;
+
+/// Beyond this many annotations parts are not rebuilt: no such sheet is readable, and the time goes
+/// into what a person would not see.
+const REBUILT: usize = 400;
 
 /// Annotations, and what pairs of their candidates cost, computed when first asked.
 pub(super) struct Problem<'a, S> {
@@ -27,7 +32,7 @@ pub(super) struct Problem<'a, S> {
     pairs: Vec<(usize, usize)>,
     /// For each annotation its neighbours and the pair's place.
     neighbours: Vec<Vec<(usize, usize)>>,
-    tables: Vec<Vec<i64>>,
+    tables: Vec<Vec<i32>>,
 }
 
 impl<'a, S: Space> Problem<'a, S> {
@@ -37,23 +42,24 @@ impl<'a, S: Space> Problem<'a, S> {
             .iter()
             .map(|c| Rect::union_of(c.choices.iter().map(|o| o.ink.bounds)))
             .collect();
+        let ladders: Vec<Vec<Ladder>> = choosers.iter().map(ladders_of).collect();
+        let overlap = |p: &Ladder, q: &Ladder| p.0 == q.0 && p.1 < q.2 && q.1 < p.2;
         let mut pairs = Vec::new();
         let mut neighbours = vec![Vec::new(); choosers.len()];
         for i in 0..choosers.len() {
             for j in i + 1..choosers.len() {
                 let (Some(a), Some(b)) = (&reach[i], &reach[j]) else { continue };
                 let meet = a.distance(b) <= practice.group.least_pitch;
-                if meet || choosers[i].view == choosers[j].view {
+                let one_ladder = choosers[i].view == choosers[j].view
+                    && ladders[i].iter().any(|p| ladders[j].iter().any(|q| overlap(p, q)));
+                if meet || one_ladder {
                     neighbours[i].push((j, pairs.len()));
                     neighbours[j].push((i, pairs.len()));
                     pairs.push((i, j));
                 }
             }
         }
-        let tables = pairs
-            .iter()
-            .map(|(i, j)| vec![UNKNOWN; choosers[*i].choices.len() * choosers[*j].choices.len()])
-            .collect();
+        let tables = vec![Vec::new(); pairs.len()];
         Self { choosers, practice, pairs, neighbours, tables }
     }
 
@@ -66,7 +72,8 @@ impl<'a, S: Space> Problem<'a, S> {
         for _ in 0..ROUNDS {
             let moved = self.descend(&mut picks);
             let paired = self.descend_pairs(&mut picks);
-            if !moved && !paired && !self.rebuild_parts(&mut picks) {
+            let rest = !moved && !paired;
+            if rest && (picks.len() > REBUILT || !self.rebuild_parts(&mut picks)) {
                 break;
             }
         }
@@ -263,12 +270,32 @@ impl<'a, S: Space> Problem<'a, S> {
     fn pair(&mut self, index: usize, x: usize, y: usize) -> i64 {
         let (i, j) = self.pairs[index];
         let (a, b) = (&self.choosers[i], &self.choosers[j]);
-        let cell = &mut self.tables[index][x * b.choices.len() + y];
-        if *cell == UNKNOWN {
-            *cell = pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
+        let table = &mut self.tables[index];
+        if table.is_empty() {
+            // Most pairs are never asked for: their annotations stand far apart.
+            table.resize(a.choices.len() * b.choices.len(), UNKNOWN);
         }
-        *cell
+        let cell = &mut table[x * b.choices.len() + y];
+        if *cell == UNKNOWN {
+            let cost = pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
+            *cell = i32::try_from(cost).unwrap_or(i32::MAX);
+        }
+        i64::from(*cell)
     }
+}
+
+/// A side, and from where to where an annotation's dimension lines may reach along it.
+type Ladder = (Side, f64, f64);
+
+fn ladders_of<S>(chooser: &Chooser<S>) -> Vec<Ladder> {
+    let mut all: Vec<Ladder> = Vec::new();
+    for seat in chooser.choices.iter().flat_map(|o| &o.seats) {
+        match all.iter_mut().find(|l| l.0 == seat.side) {
+            Some(l) => (l.1, l.2) = (l.1.min(seat.low), l.2.max(seat.high)),
+            None => all.push((seat.side, seat.low, seat.high)),
+        }
+    }
+    all
 }
 
 /// The place of the smallest number, the first of equals.

@@ -266,7 +266,9 @@ impl<'a> Desk<'a> {
             (0..self.annotations.len()).filter(|i| self.annotations[*i].view == index).collect();
         let offers: Vec<Vec<Candidate>> = members
             .iter()
-            .map(|i| candidates(&self.annotations[*i], &paper, &fixed, self.practice))
+            .map(|i| {
+                candidates(&self.annotations[*i], &paper, &fixed, members.len(), self.practice)
+            })
             .collect();
         let choosers: Vec<Chooser<Paper>> = offers
             .iter()
