@@ -11,8 +11,17 @@ use crate::view::PaperView;
 #[derive(Clone, Debug)]
 pub struct Fixed {
     lines: Vec<Chain>,
-    hatched: Vec<(Rect<Paper>, Vec<Vec<Point<Paper>>>, f64)>,
+    hatched: Vec<Face>,
     outline: Rect<Paper>,
+}
+
+/// A hatched face.
+#[derive(Clone, Debug)]
+struct Face {
+    bounds: Rect<Paper>,
+    outlines: Vec<Vec<Point<Paper>>>,
+    /// Direction of its hatching, degrees.
+    angle: f64,
 }
 
 #[derive(Clone, Debug)]
@@ -71,7 +80,7 @@ impl Fixed {
                     .map(|path| path.curves.iter().flat_map(|c| c.flattened(FLATNESS)).collect())
                     .collect();
                 let bounds = Rect::around(outlines.iter().flatten().copied())?;
-                Some((bounds, outlines, h.angle))
+                Some(Face { bounds, outlines, angle: h.angle })
             })
             .collect();
         Self { lines, hatched, outline: view.outline }
@@ -198,11 +207,11 @@ impl Fixed {
                     && steep((w[1] - w[0]).angle())
             })
         });
-        let hatching = self.hatched.iter().any(|(bounds, _, angle)| {
-            let stretch = length_inside(&tip, &trace.curve.end(), bounds);
+        let hatching = self.hatched.iter().any(|face| {
+            let stretch = length_inside(&tip, &trace.curve.end(), &face.bounds);
             // Every millimetre of the leader over the face's box is asked.
             stretch > 0.0
-                && steep(*angle)
+                && steep(face.angle)
                 && (0..=(trace.curve.length().ceil() as usize)).any(|mm| {
                     let t = mm as f64 / trace.curve.length().max(1.0);
                     self.hatch_at(trace.curve.at(t.min(1.0))).is_some()
@@ -227,13 +236,11 @@ impl Fixed {
 
     /// The hatching angle at a place, if it lies on a cut face.
     fn hatch_at(&self, p: Point<Paper>) -> Option<f64> {
-        self.hatched
-            .iter()
-            .find(|(bounds, outlines, _)| {
-                bounds.contains(p)
-                    && outlines.iter().filter(|o| winds_around(o, p)).count() % 2 == 1
-            })
-            .map(|(_, _, angle)| *angle)
+        let at_p = |face: &&Face| {
+            face.bounds.contains(p)
+                && face.outlines.iter().filter(|o| winds_around(o, p)).count() % 2 == 1
+        };
+        self.hatched.iter().find(at_p).map(|face| face.angle)
     }
 }
 

@@ -40,7 +40,7 @@ pub(super) fn candidates(
 
 /// At most [`TRIED`] of the targets, evenly spread.
 pub(super) fn spread<T>(targets: &[T]) -> impl Iterator<Item = &T> {
-    let n = targets.len().min(TRIED).max(1);
+    let n = targets.len().clamp(1, TRIED);
     (0..n).filter_map(move |i| targets.get(i * targets.len() / n))
 }
 

@@ -1,8 +1,8 @@
 //! What must be said: dimensions, callouts and notes, from anchors to candidate drawings.
 //!
-//! Takes the resolved annotations of a spec and the finished views. [`resolve`] binds anchors,
+//! Takes the resolved annotations of a spec and the finished views. [`resolve()`] binds anchors,
 //! measures values and writes them as the style wants ([`Annotation`], still free of scale);
-//! [`candidates`] then draws each annotation in every sensible way around its view on paper. An
+//! [`candidates()`] then draws each annotation in every sensible way around its view on paper. An
 //! annotation does not know the others: which [`Candidate`] is taken is decided in
 //! [`layout`](crate::layout).
 

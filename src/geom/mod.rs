@@ -6,8 +6,8 @@
 //! [`Vector<Sheet>`](Vector): the compiler refuses. Only a [`Placement`] or a
 //! [`Shift`] leads from one space to the next.
 //!
-//! Scalars are `f64` millimetres of the space that the surrounding type names; angles are
-//! [`Angle`](crate::units::Angle)s, counter-clockwise as seen by the reader in y-up spaces.
+//! Scalars are `f64` millimetres of the space that the surrounding type names; angles are degrees,
+//! counter-clockwise as the reader sees them in every space.
 //! The numeric work (arc lengths, Bézier bounds) is done by [kurbo].
 
 mod curve;

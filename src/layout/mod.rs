@@ -6,7 +6,7 @@
 //! arranged and, where the spec leaves them open, scale and sheet size. Then all annotations are
 //! placed once more among everything else on the sheet.
 //!
-//! The choice knows costs and no meaning: see [`choice`](self::choice). It is deterministic: integer
+//! The choice knows costs and no meaning: see `choice`. It is deterministic: integer
 //! costs, a total order on ties, bounds in rounds and never in time.
 
 mod arrange;

@@ -6,7 +6,7 @@
 //! must not hide behind its own tables.
 //!
 //! A rule is one file under `rules/`, with its docs, its check and the drawings that prove it. The
-//! [`registry`](rules) is the one list of them; [`explain`] and the reports read the same source.
+//! [`registry`](fn@rules) is the one list of them; [`explain`] and the reports read the same source.
 
 mod allow;
 mod crossing;

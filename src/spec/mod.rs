@@ -5,7 +5,7 @@
 //! later remembers its [`Span`](crate::source::Span). It does not know geometry: whether an anchor
 //! exists is decided where views are made.
 //!
-//! The way through: [`read`] parses TOML into spanned tables; the private `reader` module holds
+//! The way through: [`read()`] parses TOML into spanned tables; the private `reader` module holds
 //! the vocabulary (a number, a point, a choice…) in which `sheet`, `views`, `shapes`,
 //! `annotations` and `form` lower one kind of table each; `expression` and `parameters` compute,
 //! and `lettered` keeps texts to what a sheet can show.

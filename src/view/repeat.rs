@@ -39,7 +39,6 @@ impl Motion {
     pub(super) fn point(&self, p: Point<ViewSpace>) -> Point<ViewSpace> {
         match *self {
             Self::Shift(v) => p + v,
-            Self::Turn(about, degrees) if degrees == 0.0 => about + (p - about),
             Self::Turn(about, degrees) => {
                 let v = p - about;
                 let (sin, cos) = sin_cos(degrees);
@@ -94,13 +93,12 @@ impl Motion {
 
 /// Sine and cosine, exact at whole quarters: f64 leaves 6e-17 where a bolt circle wants 0.
 fn sin_cos(degrees: f64) -> (f64, f64) {
-    let turned = degrees.rem_euclid(360.0);
-    match turned {
-        t if t == 0.0 => (0.0, 1.0),
-        t if t == 90.0 => (1.0, 0.0),
-        t if t == 180.0 => (0.0, -1.0),
-        t if t == 270.0 => (-1.0, 0.0),
-        t => t.to_radians().sin_cos(),
+    match degrees.rem_euclid(360.0) {
+        0.0 => (0.0, 1.0),
+        90.0 => (1.0, 0.0),
+        180.0 => (0.0, -1.0),
+        270.0 => (-1.0, 0.0),
+        turned => turned.to_radians().sin_cos(),
     }
 }
 
