@@ -96,7 +96,7 @@ impl Fixed {
         } else {
             sketch.heads.iter().map(|h| self.head_cost(h, practice)).sum()
         };
-        texts + traces + heads
+        texts + traces + heads + own_text_cost(sketch, practice)
     }
 
     fn text_cost(&self, quad: &Quad<Paper>, practice: &Practice<'_>) -> f64 {
@@ -242,6 +242,22 @@ impl Fixed {
         };
         self.hatched.iter().find(at_p).map(|face| face.angle)
     }
+}
+
+/// What an annotation pays for a leader that passes close by the further lines of its own text.
+fn own_text_cost(sketch: &Sketch<Paper>, practice: &Practice<'_>) -> f64 {
+    let near = practice.style.clearance.roomy / 2.0;
+    let slanted = sketch.traces.iter().filter(|t| {
+        let v = t.curve.end() - t.curve.start();
+        t.role == Role::Leader && v.y.abs() > 1e-6
+    });
+    let below = sketch.labels.iter().flat_map(|l| l.quads().skip(1).collect::<Vec<_>>());
+    let quads: Vec<Quad<Paper>> = below.collect();
+    let passes = |t: &Trace<Paper>| {
+        quads.iter().any(|q| q.distance_to_line(t.curve.start(), t.curve.end()) < near)
+    };
+    let count = slanted.filter(|t| passes(t)).count() as f64;
+    count * practice.style.cost.group.texts_crowded
 }
 
 /// A flattened line in short stretches, so that a box tells most questions apart.

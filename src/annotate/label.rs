@@ -106,11 +106,12 @@ impl Label {
             .unwrap_or_else(|| Rect::from_sides(0.0, 0.0, 0.0, 0.0))
     }
 
-    /// Box around the ink of the runs on the first base line or above it.
+    /// Box around the ink of the runs on the first base line or above it, and of the frames.
     #[must_use]
     pub fn first_line_ink(&self) -> Rect<Paper> {
         let runs = self.runs.iter().filter(|(at, _)| at.y <= 1e-9);
-        Rect::union_of(runs.map(|(at, run)| run.ink.shifted(*at))).unwrap_or_else(|| self.ink())
+        let inks = runs.map(|(at, run)| run.ink.shifted(*at)).chain(self.frames.iter().copied());
+        Rect::union_of(inks).unwrap_or_else(|| self.ink())
     }
 }
 
