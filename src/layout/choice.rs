@@ -16,8 +16,9 @@ const ROUNDS: usize = 24;
 /// Annotations rebuilt together at most: enough for the tiers of one side.
 const PART: usize = 7;
 
-/// Not yet computed.
-const UNKNOWN: i64 = i64::MIN;
+/// A pair whose cost was not yet asked. Zero, because zeroed tables come from the system untouched
+/// and most of their cells never are; costs are kept with one added.
+const UNKNOWN: i64 = 0;
 
 /// Annotations, and what pairs of their candidates cost, computed when first asked.
 pub(super) struct Problem<'a, S> {
@@ -220,24 +221,44 @@ impl<'a, S: Space> Problem<'a, S> {
             }
             let (a, b) = (self.costs_of(i, picks, Some(j)), self.costs_of(j, picks, Some(i)));
             let now = a[picks[i]] + b[picks[j]] + self.pair(index, picks[i], picks[j]);
-            let (mut best, mut at) = (now, (picks[i], picks[j]));
-            for (x, ca) in a.iter().enumerate() {
-                for (y, cb) in b.iter().enumerate() {
-                    // Pair costs are never negative, so this bound is safe.
-                    if ca + cb < best {
-                        let cost = ca + cb + self.pair(index, x, y);
-                        if cost < best {
-                            (best, at) = (cost, (x, y));
-                        }
-                    }
-                }
-            }
-            if best < now {
+            if let Some(at) = self.best_together(index, &a, &b, now) {
                 (picks[i], picks[j]) = at;
                 moved = true;
             }
         }
         moved
+    }
+
+    /// The cheapest pair of candidates that costs less than `now`, the first of equals; `a` and `b`
+    /// are their costs without each other.
+    fn best_together(
+        &mut self,
+        index: usize,
+        a: &[i64],
+        b: &[i64],
+        now: i64,
+    ) -> Option<(usize, usize)> {
+        // Cheap ones first: pair costs are never negative, so a sum above the best ends the search
+        // before most pairs were asked for their costs.
+        let (rows, columns) = (cheapest_first(a), cheapest_first(b));
+        let (mut best, mut at) = (now, None);
+        for x in rows {
+            for y in &columns {
+                let apart = a[x] + b[*y];
+                if apart > best {
+                    break;
+                }
+                let earlier = at.is_some_and(|at| (x, *y) < at);
+                if apart == best && !earlier {
+                    continue;
+                }
+                let cost = apart + self.pair(index, x, *y);
+                if cost < best || (cost == best && earlier) {
+                    (best, at) = (cost, Some((x, *y)));
+                }
+            }
+        }
+        at
     }
 
     /// What each candidate of `i` costs beside the picks of all others but `without`.
@@ -265,10 +286,17 @@ impl<'a, S: Space> Problem<'a, S> {
         let (a, b) = (&self.choosers[i], &self.choosers[j]);
         let cell = &mut self.tables[index][x * b.choices.len() + y];
         if *cell == UNKNOWN {
-            *cell = pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
+            *cell = 1 + pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
         }
-        *cell
+        *cell - 1
     }
+}
+
+/// The places of the numbers, the smallest first.
+fn cheapest_first(costs: &[i64]) -> Vec<usize> {
+    let mut places: Vec<usize> = (0..costs.len()).collect();
+    places.sort_by_key(|i| costs[*i]);
+    places
 }
 
 /// The place of the smallest number, the first of equals.

@@ -62,8 +62,13 @@ fn texts_and_lines<S: Space>(
 ) -> f64 {
     let clear = practice.style.clearance.text_line + practice.group.narrow / 2.0;
     let pair = &practice.style.cost.pair;
+    let widest = lines.lines.iter().map(|l| l.half_width).fold(0.0, f64::max);
+    let farthest = roomy.max(clear).max(practice.style.clearance.text_arrow + widest);
     let mut cost = 0.0;
     for (quad, text_box) in &texts.texts {
+        if text_box.distance(&lines.bounds) >= farthest {
+            continue;
+        }
         for l in &lines.lines {
             let reach = match l.kind {
                 InkKind::Arrow => practice.style.clearance.text_arrow + l.half_width,
@@ -100,7 +105,7 @@ fn enters<S: Space>(quad: &Quad<S>, bounds: &Rect<S>, line: &Line<S>, reach: f64
 fn lines<S: Space>(a: &Ink<S>, b: &Ink<S>, practice: &Practice<'_>) -> f64 {
     let reach = practice.group.least_pitch - 1e-6;
     let mut cost = 0.0;
-    for p in &a.lines {
+    for p in a.lines.iter().filter(|p| p.bounds.distance(&b.bounds) < reach) {
         for q in &b.lines {
             if p.bounds.distance(&q.bounds) < reach {
                 cost += meeting(p, q, practice);
