@@ -2,6 +2,7 @@
 //!
 //! `cargo bench --bench line`. After the table the raster is set against plainly rasterising the
 //! same SVG, the two in turns in the same run, so that a busy machine troubles both alike.
+#![allow(clippy::print_stdout, reason = "the ratio is for the reader of the run")]
 
 use std::hint::black_box;
 use std::sync::Arc;

@@ -16,7 +16,10 @@ measure() {
     while [ "$i" -lt "$runs" ]; do
         rm -rf "$work/out"
         start=$(date +%s%N)
-        /usr/bin/time -a -o "$work/mem" -f '%M' "$@" >/dev/null 2>&1 || true
+        /usr/bin/time -a -o "$work/mem" -f '%M' "$@" >/dev/null 2>"$work/err" || {
+            # 1: issued, with findings. Anything above is no measurement.
+            [ $? -eq 1 ] || { cat "$work/err" >&2; exit 1; }
+        }
         end=$(date +%s%N)
         echo $(((end - start) / 1000)) >>"$work/us"
         i=$((i + 1))
