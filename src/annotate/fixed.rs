@@ -108,7 +108,7 @@ impl Fixed {
         let near = |kind: Kind, reach: f64| {
             self.lines.iter().any(|c| {
                 c.kind == kind
-                    && c.bounds.grown(reach).distance(&bounds) <= 0.0
+                    && c.bounds.is_within(&bounds, reach)
                     && c.points.windows(2).any(|w| quad.distance_to_line(w[0], w[1]) < reach)
             })
         };
@@ -143,7 +143,7 @@ impl Fixed {
         let mut crossings = 0usize;
         let mut on_outline = false;
         for chain in self.lines.iter().filter(|c| c.kind == Kind::Outline) {
-            if chain.bounds.distance(&bounds) > ON_ONE_ANOTHER {
+            if !chain.bounds.is_within(&bounds, ON_ONE_ANOTHER) {
                 continue;
             }
             for own in &pieces {
@@ -200,7 +200,7 @@ impl Fixed {
         };
         let near_tip = Rect::new(tip, tip).grown(ON_ONE_ANOTHER);
         let outlines = self.lines.iter().filter(|c| c.kind == Kind::Outline);
-        let touching = outlines.filter(|c| c.bounds.distance(&near_tip) <= 0.0).any(|c| {
+        let touching = outlines.filter(|c| c.bounds.is_within(&near_tip, 0.0)).any(|c| {
             c.points.windows(2).any(|w| {
                 distance_line_line(tip, tip, w[0], w[1]) < ON_ONE_ANOTHER
                     && w[0].distance(w[1]) > 1.0
@@ -225,7 +225,7 @@ impl Fixed {
         let Some(own) = trimmed(tip, foot, practice.style.cost.trim) else { return 0.0 };
         let bounds = head.bounds();
         let crosses = self.lines.iter().filter(|c| c.kind == Kind::Outline).any(|c| {
-            c.bounds.distance(&bounds) <= 0.0
+            c.bounds.is_within(&bounds, 0.0)
                 && c.points.windows(2).any(|w| {
                     let line = Line::new(w[0], w[1]);
                     matches!(line_crossing(&own, &line, 1e-6), Crossing::At { .. })

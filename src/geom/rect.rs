@@ -124,6 +124,17 @@ impl<S: Space> Rect<S> {
         (dx * dx + dy * dy).sqrt()
     }
 
+    /// Whether the boxes are at most `reach` mm apart. Says the same as [`distance`](Self::distance),
+    /// but most boxes are told apart by one subtraction; placing asks this millions of times.
+    #[must_use]
+    pub fn is_within(&self, other: &Self, reach: f64) -> bool {
+        other.min.x - self.max.x <= reach
+            && self.min.x - other.max.x <= reach
+            && other.min.y - self.max.y <= reach
+            && self.min.y - other.max.y <= reach
+            && self.distance(other) <= reach
+    }
+
     /// The four corners, walking around the box.
     #[must_use]
     pub fn corners(&self) -> [Point<S>; 4] {

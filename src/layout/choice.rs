@@ -17,8 +17,9 @@ const ROUNDS: usize = 24;
 /// Annotations rebuilt together at most: enough for the tiers of one side.
 const PART: usize = 7;
 
-/// Not yet computed.
-const UNKNOWN: i32 = i32::MIN;
+/// A pair whose cost was not yet asked. Zero, because zeroed tables come from the system untouched
+/// and most of their cells never are; costs are kept with one added.
+const UNKNOWN: i32 = 0;
 
 /// Beyond this many annotations parts are not rebuilt: no such sheet is readable, and the time goes
 /// into what a person would not see.
@@ -227,24 +228,44 @@ impl<'a, S: Space> Problem<'a, S> {
             }
             let (a, b) = (self.costs_of(i, picks, Some(j)), self.costs_of(j, picks, Some(i)));
             let now = a[picks[i]] + b[picks[j]] + self.pair(index, picks[i], picks[j]);
-            let (mut best, mut at) = (now, (picks[i], picks[j]));
-            for (x, ca) in a.iter().enumerate() {
-                for (y, cb) in b.iter().enumerate() {
-                    // Pair costs are never negative, so this bound is safe.
-                    if ca + cb < best {
-                        let cost = ca + cb + self.pair(index, x, y);
-                        if cost < best {
-                            (best, at) = (cost, (x, y));
-                        }
-                    }
-                }
-            }
-            if best < now {
+            if let Some(at) = self.best_together(index, &a, &b, now) {
                 (picks[i], picks[j]) = at;
                 moved = true;
             }
         }
         moved
+    }
+
+    /// The cheapest pair of candidates that costs less than `now`, the first of equals; `a` and `b`
+    /// are their costs without each other.
+    fn best_together(
+        &mut self,
+        index: usize,
+        a: &[i64],
+        b: &[i64],
+        now: i64,
+    ) -> Option<(usize, usize)> {
+        // Cheap ones first: pair costs are never negative, so a sum above the best ends the search
+        // before most pairs were asked for their costs.
+        let (rows, columns) = (cheapest_first(a), cheapest_first(b));
+        let (mut best, mut at) = (now, None);
+        for x in rows {
+            for y in &columns {
+                let apart = a[x] + b[*y];
+                if apart > best {
+                    break;
+                }
+                let earlier = at.is_some_and(|at| (x, *y) < at);
+                if apart == best && !earlier {
+                    continue;
+                }
+                let cost = apart + self.pair(index, x, *y);
+                if cost < best || (cost == best && earlier) {
+                    (best, at) = (cost, Some((x, *y)));
+                }
+            }
+        }
+        at
     }
 
     /// What each candidate of `i` costs beside the picks of all others but `without`.
@@ -273,14 +294,14 @@ impl<'a, S: Space> Problem<'a, S> {
         let table = &mut self.tables[index];
         if table.is_empty() {
             // Most pairs are never asked for: their annotations stand far apart.
-            table.resize(a.choices.len() * b.choices.len(), UNKNOWN);
+            *table = vec![UNKNOWN; a.choices.len() * b.choices.len()];
         }
         let cell = &mut table[x * b.choices.len() + y];
         if *cell == UNKNOWN {
             let cost = pair_cost(&a.choices[x], &b.choices[y], a.view == b.view, &self.practice);
-            *cell = i32::try_from(cost).unwrap_or(i32::MAX);
+            *cell = i32::try_from(cost + 1).unwrap_or(i32::MAX);
         }
-        i64::from(*cell)
+        i64::from(*cell) - 1
     }
 }
 
@@ -296,6 +317,13 @@ fn ladders_of<S>(chooser: &Chooser<S>) -> Vec<Ladder> {
         }
     }
     all
+}
+
+/// The places of the numbers, the smallest first.
+fn cheapest_first(costs: &[i64]) -> Vec<usize> {
+    let mut places: Vec<usize> = (0..costs.len()).collect();
+    places.sort_by_key(|i| costs[*i]);
+    places
 }
 
 /// The place of the smallest number, the first of equals.

@@ -24,7 +24,7 @@ pub(super) fn pair_cost<S: Space>(
 ) -> i64 {
     let order = if same_view { tier_order(a, b, practice) } else { 0.0 };
     let reach = practice.group.least_pitch;
-    if a.ink.bounds.distance(&b.ink.bounds) > reach {
+    if !a.ink.bounds.is_within(&b.ink.bounds, reach) {
         return whole(order);
     }
     // Tiers have their own distances; only what stands free of them wants more room.
@@ -62,8 +62,13 @@ fn texts_and_lines<S: Space>(
 ) -> f64 {
     let clear = practice.style.clearance.text_line + practice.group.narrow / 2.0;
     let pair = &practice.style.cost.pair;
+    let widest = lines.lines.iter().map(|l| l.half_width).fold(0.0, f64::max);
+    let farthest = roomy.max(clear).max(practice.style.clearance.text_arrow + widest);
     let mut cost = 0.0;
     for (quad, text_box) in &texts.texts {
+        if !text_box.is_within(&lines.bounds, farthest) {
+            continue;
+        }
         for l in &lines.lines {
             let reach = match l.kind {
                 InkKind::Arrow => practice.style.clearance.text_arrow + l.half_width,
@@ -100,9 +105,9 @@ fn enters<S: Space>(quad: &Quad<S>, bounds: &Rect<S>, line: &Line<S>, reach: f64
 fn lines<S: Space>(a: &Ink<S>, b: &Ink<S>, practice: &Practice<'_>) -> f64 {
     let reach = practice.group.least_pitch - 1e-6;
     let mut cost = 0.0;
-    for p in &a.lines {
+    for p in a.lines.iter().filter(|p| p.bounds.is_within(&b.bounds, reach)) {
         for q in &b.lines {
-            if p.bounds.distance(&q.bounds) < reach {
+            if p.bounds.is_within(&q.bounds, reach) {
                 cost += meeting(p, q, practice);
             }
         }
@@ -115,7 +120,7 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
     let trim = practice.style.cost.trim;
     let both_dims = p.kind == InkKind::Dim && q.kind == InkKind::Dim;
     let both_leaders = p.kind == InkKind::Leader && q.kind == InkKind::Leader;
-    let near = p.bounds.distance(&q.bounds) <= ON_ONE_ANOTHER;
+    let near = p.bounds.is_within(&q.bounds, ON_ONE_ANOTHER);
     if near && let (Some(u), Some(v)) = (trimmed(&p.line, trim), trimmed(&q.line, trim)) {
         match line_crossing(&u, &v, ON_ONE_ANOTHER) {
             Crossing::At { .. } => return weight(p.kind, q.kind, pair),
