@@ -43,6 +43,9 @@ pub(super) struct Ground<'a> {
     pub practice: Practice<'a>,
 }
 
+/// Texts on leaders nearer than this, mm, count as the same way to draw an annotation.
+const ALIKE: f64 = 3.0;
+
 /// How many candidates an annotation keeps in a view with `annotations` of them. Costs of pairs grow
 /// with the square of this and memory with them, so views beyond any readable sheet get fewer.
 fn kept(annotations: usize) -> usize {
@@ -86,6 +89,7 @@ pub fn candidates(
 fn keep(mut all: Vec<Candidate>, kept: usize) -> Vec<Candidate> {
     // Stable, so equal costs stay in the order in which they were offered.
     all.sort_by(|a, b| a.cost.total_cmp(&b.cost));
+    all = distinct(all, kept);
     if all.len() <= kept {
         return all;
     }
@@ -100,6 +104,29 @@ fn keep(mut all: Vec<Candidate>, kept: usize) -> Vec<Candidate> {
         i < cheap || ((i - cheap) * sampled / rest) != ((i - cheap + 1) * sampled / rest)
     });
     all
+}
+
+/// Of candidates whose texts stand within [`ALIKE`] mm of each other the cheapest, as long as there
+/// are more than are kept: what is nearly the same way cannot help where the first one fails.
+fn distinct(all: Vec<Candidate>, kept: usize) -> Vec<Candidate> {
+    let mut surplus = all.len().saturating_sub(kept);
+    let mut chosen: Vec<Candidate> = Vec::with_capacity(all.len());
+    for c in all {
+        let alike = |other: &Candidate| {
+            c.seats.is_empty()
+                && other.seats.is_empty()
+                && match (c.sketch.labels.first(), other.sketch.labels.first()) {
+                    (Some(a), Some(b)) => a.origin.distance(b.origin) < ALIKE,
+                    _ => false,
+                }
+        };
+        if surplus > 0 && chosen.iter().any(alike) {
+            surplus -= 1;
+        } else {
+            chosen.push(c);
+        }
+    }
+    chosen
 }
 
 /// Whether something that lies along `v` from the view is on the side that a pin asks for. Slanted

@@ -72,7 +72,9 @@ fn texts_and_lines<S: Space>(
         for l in &lines.lines {
             let reach = match l.kind {
                 InkKind::Arrow => practice.style.clearance.text_arrow + l.half_width,
-                InkKind::Dim | InkKind::Ext | InkKind::Leader => clear,
+                // From here on the line would be interrupted.
+                InkKind::Ext => practice.style.dimension.text_gap,
+                InkKind::Dim | InkKind::Leader => clear,
             };
             if text_box.distance(&l.bounds) >= roomy.max(reach) {
                 continue;
