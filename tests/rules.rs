@@ -43,8 +43,7 @@ fn names_are_unique_and_say_area_and_fault() {
     }
 }
 
-/// Severities that the trade gives these faults (the project's fact sheet on drafting practice,
-/// list of a checker's faults; common practice).
+/// Severities that the trade gives these faults (common practice).
 #[test]
 fn severities_are_those_of_the_trade() {
     let expected = [

@@ -188,7 +188,8 @@ pub struct ViewSpec {
     pub geometry: Geometry,
 }
 
-/// From where a part is seen. View space of each is that of design §7.
+/// From where a part is seen, by the axes of the part: x to the right, y away from the viewer of the
+/// front view, z up. In view space x is what that viewer sees to the right and y what is up.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Direction {
     /// Against +y.

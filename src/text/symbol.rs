@@ -1,9 +1,8 @@
 //! Symbols drawn as strokes in proportion to the letter height.
 //!
 //! Coordinates are shares of the letter height h, y **up**, origin on the base line at the left
-//! edge; stroke h/10. Proportions: ISO 3098-1 and ISO 129-1 as restated in the project's fact
-//! sheet on drafting practice; the shapes are those of the standards, proportions other than ⌀ and
-//! □ are common practice (from memory).
+//! edge; stroke h/10. Proportions after ISO 3098-1 and ISO 129-1; the shapes are those of the
+//! standards, proportions other than ⌀ and □ are common practice (from memory).
 
 use kurbo::{BezPath, Circle, Point, Shape};
 
