@@ -115,20 +115,22 @@ impl LayoutError {
 pub fn lay_out(drawing: &Drawing, views: &[View], style: &Style) -> Result<Layout, LayoutError> {
     let formats = formats(drawing, style)?;
     let scales = scales(drawing, style);
-    let smallest = smallest_feature(views);
-    let auto = drawing.sheet.scale == ScaleChoice::Auto;
+    let given = drawing.sheet.scale != ScaleChoice::Auto;
+    let (feature, view) = (smallest_feature(views), largest_extent(views));
+    // First at a scale at which everything can be read, on whatever sheet; only then smaller, and
+    // never so small that the part itself is a dot.
+    let legible = |k: f64| feature * k >= style.views.smallest_feature;
+    let visible = |k: f64| view * k >= style.views.smallest_view;
+    let passes: [&dyn Fn(f64) -> bool; 2] = [&legible, &visible];
     let mut last = None;
-    for (i, format) in formats.iter().enumerate() {
-        let desk = Desk::new(drawing, views, style, format);
-        for scale in &scales {
-            let legible = smallest * scale.factor() >= style.views.smallest_feature;
-            // A larger sheet may still show it legibly; on the largest anything goes.
-            if auto && !legible && i + 1 < formats.len() {
-                continue;
-            }
-            match desk.try_scale(*scale) {
-                Ok(layout) => return Ok(layout),
-                Err(short) => last = Some((short, *scale, format.name.clone())),
+    for accepts in passes {
+        for format in &formats {
+            let desk = Desk::new(drawing, views, style, format);
+            for scale in scales.iter().filter(|s| given || accepts(s.factor())) {
+                match desk.try_scale(*scale) {
+                    Ok(layout) => return Ok(layout),
+                    Err(short) => last = Some((short, *scale, format.name.clone())),
+                }
             }
         }
     }
@@ -178,6 +180,11 @@ fn smallest_feature(views: &[View]) -> f64 {
         })
         .filter(|l| *l > 1e-3)
         .fold(f64::INFINITY, f64::min)
+}
+
+/// The longest side of any view, mm of the part.
+fn largest_extent(views: &[View]) -> f64 {
+    views.iter().map(|v| v.bounds.width().max(v.bounds.height())).fold(0.0, f64::max)
 }
 
 /// One sheet size, with what depends on it alone.

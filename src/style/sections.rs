@@ -272,8 +272,10 @@ pub struct ViewSpacing {
     pub extra: Vec<f64>,
     /// View label above the view's ink.
     pub label_gap: f64,
-    /// Smallest feature on paper that an automatic scale accepts.
+    /// Smallest feature on paper that an automatic scale accepts, as long as any sheet allows it.
     pub smallest_feature: f64,
+    /// Longest side of the largest view on paper that an automatic scale accepts in the end.
+    pub smallest_view: f64,
 }
 
 /// First or third angle.
