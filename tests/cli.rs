@@ -285,4 +285,6 @@ fn every_command_shows_an_example() {
         assert!(text(&out.stdout).contains("Example"), "{command}");
     }
     assert_eq!(code(&witnessline(&["isue"])), Some(2));
+    let absurd = witnessline(&["issue", "specs/stepped-shaft.toml", "--dpi", "0"]);
+    assert_eq!(code(&absurd), Some(2));
 }

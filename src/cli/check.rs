@@ -31,7 +31,7 @@ pub(super) struct Options {
     #[arg(long, value_name = "DIR")]
     marked: Option<PathBuf>,
     /// Pixels per inch of the marked-up PNG.
-    #[arg(long, default_value_t = 150.0)]
+    #[arg(long, default_value_t = 150.0, value_parser = super::resolution)]
     dpi: f64,
     /// Findings from this severity on end with exit code 1.
     #[arg(long, value_enum, default_value_t = FailOn::Must)]

@@ -27,7 +27,7 @@ pub(super) struct Options {
     #[arg(long = "as", value_name = "FORMATS", value_delimiter = ',', default_value = "svg,png")]
     formats: Vec<FileFormat>,
     /// Pixels per inch of the PNG.
-    #[arg(long, default_value_t = 300.0)]
+    #[arg(long, default_value_t = 300.0, value_parser = super::resolution)]
     dpi: f64,
     /// How text is written in the SVG; a PNG always has its outlines.
     #[arg(long, value_enum, default_value_t = TextAs::Outlines)]

@@ -66,6 +66,14 @@ impl FailOn {
     }
 }
 
+/// A resolution that a raster can have.
+fn resolution(text: &str) -> Result<f64, String> {
+    match text.parse::<f64>() {
+        Ok(dpi) if (10.0..=2400.0).contains(&dpi) => Ok(dpi),
+        _ => Err("give a number from 10 to 2400".to_owned()),
+    }
+}
+
 /// What a command came to; the highest of several is the exit code.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq, PartialOrd, Ord)]
 enum Outcome {

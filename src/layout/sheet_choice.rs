@@ -99,10 +99,16 @@ impl LayoutError {
             }
             Self::DoesNotFit { .. } => {
                 let span = scale_span.or(format_span).unwrap_or(sheet.span);
-                Diagnostic::error(span, self.to_string()).help(
-                    "take a smaller scale or a larger sheet, or let the program choose with \
-                     scale = \"auto\" and sheet = \"auto\"",
-                )
+                let help = match (format_span.is_some(), scale_span.is_some()) {
+                    (true, true) => {
+                        "take a smaller scale or a larger sheet, or let the program choose with \
+                         scale = \"auto\" or sheet = \"auto\""
+                    }
+                    (true, false) => "take a larger sheet, or sheet = \"auto\"",
+                    (false, true) => "take a smaller scale, or scale = \"auto\"",
+                    (false, false) => "leave out annotations, or spread them over more views",
+                };
+                Diagnostic::error(span, self.to_string()).help(help)
             }
         }
     }
