@@ -139,7 +139,7 @@ impl Fixed {
         let bounds = trace.curve.bounds();
         let trim = practice.style.cost.trim;
         let pieces: Vec<Line<Paper>> =
-            points.windows(2).filter_map(|w| trimmed(w[0], w[1], trim)).collect();
+            points.windows(2).filter_map(|w| Line::new(w[0], w[1]).trimmed(trim)).collect();
         let mut crossings = 0usize;
         let mut on_outline = false;
         for chain in self.lines.iter().filter(|c| c.kind == Kind::Outline) {
@@ -222,7 +222,7 @@ impl Fixed {
 
     fn head_cost(&self, head: &Head<Paper>, practice: &Practice<'_>) -> f64 {
         let (tip, foot) = (head.tip(), head.foot());
-        let Some(own) = trimmed(tip, foot, practice.style.cost.trim) else { return 0.0 };
+        let Some(own) = Line::new(tip, foot).trimmed(practice.style.cost.trim) else { return 0.0 };
         let bounds = head.bounds();
         let crosses = self.lines.iter().filter(|c| c.kind == Kind::Outline).any(|c| {
             c.bounds.is_within(&bounds, 0.0)
@@ -271,17 +271,6 @@ fn chains(kind: Kind, points: &[Point<Paper>]) -> Vec<Chain> {
             Some(Chain { kind, points, bounds })
         })
         .collect()
-}
-
-/// The line without `trim` mm at both ends; `None` if nothing is left.
-pub(crate) fn trimmed<S: crate::geom::Space>(
-    a: Point<S>,
-    b: Point<S>,
-    trim: f64,
-) -> Option<Line<S>> {
-    let length = a.distance(b);
-    let unit = (b - a).unit()?;
-    (length > 2.0 * trim).then(|| Line::new(a + unit * trim, b - unit * trim))
 }
 
 /// Whether a ray from `p` to the right crosses the closed polygon an odd number of times.

@@ -91,6 +91,13 @@ impl<S: Space> Line<S> {
     pub fn at(&self, t: f64) -> Point<S> {
         self.from + self.vector() * t
     }
+
+    /// The line without `by` mm at both ends; `None` if nothing is left.
+    #[must_use]
+    pub fn trimmed(&self, by: f64) -> Option<Self> {
+        let length = self.length();
+        (length > 2.0 * by).then(|| Self::new(self.at(by / length), self.at(1.0 - by / length)))
+    }
 }
 
 impl<S: Space> Arc<S> {

@@ -123,7 +123,7 @@ fn meeting<S: Space>(p: &InkLine<S>, q: &InkLine<S>, practice: &Practice<'_>) ->
     let both_dims = p.kind == InkKind::Dim && q.kind == InkKind::Dim;
     let both_leaders = p.kind == InkKind::Leader && q.kind == InkKind::Leader;
     let near = p.bounds.is_within(&q.bounds, ON_ONE_ANOTHER);
-    if near && let (Some(u), Some(v)) = (trimmed(&p.line, trim), trimmed(&q.line, trim)) {
+    if near && let (Some(u), Some(v)) = (p.line.trimmed(trim), q.line.trimmed(trim)) {
         match line_crossing(&u, &v, ON_ONE_ANOTHER) {
             Crossing::At { .. } => return weight(p.kind, q.kind, pair),
             Crossing::Along { length } if length > SHARED_STRETCH => {
@@ -217,9 +217,4 @@ fn longer_inside(p: &Seat, q: &Seat) -> bool {
         std::cmp::Ordering::Equal => return false,
     };
     (inner.high - inner.low) > (outer.high - outer.low) + 1e-6
-}
-
-fn trimmed<S: Space>(line: &Line<S>, trim: f64) -> Option<Line<S>> {
-    let length = line.length();
-    (length > 2.0 * trim).then(|| Line::new(line.at(trim / length), line.at(1.0 - trim / length)))
 }

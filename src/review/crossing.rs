@@ -30,10 +30,12 @@ impl Meeting<'_> {
 }
 
 /// Where strokes with the role `first` cross strokes of other items with the role `second`. Ends
-/// that only touch do not cross: as much as the style trims is cut off open paths.
+/// that only touch do not cross, but for leaders: as much as the style trims is cut off open paths.
 pub(crate) fn meetings<'p>(page: &'p Page<'_>, first: Role, second: Role) -> Vec<Meeting<'p>> {
     let is = |p: &Piece, role| p.class == Class::Line && p.role == Some(role);
-    let trim = page.style.cost.trim;
+    // Leaders have nothing to share: one that only touches another's elbow reads like its branch.
+    let both_leaders = first == Role::Leader && second == Role::Leader;
+    let trim = if both_leaders { 0.0 } else { page.style.cost.trim };
     let mut found = Vec::new();
     for a in page.ink.pieces().iter().filter(|p| is(p, first)) {
         for b in page.ink.near(a.bounds).filter(|p| is(p, second) && p.item != a.item) {

@@ -60,3 +60,19 @@ fn bad() -> Case {
 fn good() -> Case {
     sheet(100.0, 130.0)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::review::review;
+
+    #[test]
+    fn a_leader_that_touches_the_elbow_of_another_is_found() {
+        let case = a3()
+            .leader("n1", "front", (100.0, 120.0), (130.0, 90.0), "A")
+            .leader("n2", "front", (160.0, 60.0), (130.0, 90.0), "B")
+            .case();
+        let findings = review(&case.input()).findings;
+        assert!(findings.iter().any(|f| f.rule == &LEADERS_CROSS), "{findings:?}");
+    }
+}
