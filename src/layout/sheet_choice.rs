@@ -319,9 +319,11 @@ impl<'a> Desk<'a> {
     /// Box around a view with its annotations as placed alone, and its label above them.
     fn room(&self, alone: &Alone) -> Rect<Paper> {
         let centres = alone.paper.centres.iter().flat_map(|c| c.lines.iter().map(Curve::bounds));
+        // Adjacent parts and construction lines reach beyond the part's own outline.
+        let edges = alone.paper.edges.iter().map(|e| e.curve.bounds());
         let picked =
             alone.offers.iter().zip(&alone.picks).filter_map(|(o, p)| o[*p].sketch.bounds());
-        let ink = Rect::union_of(centres.chain(picked).chain([alone.paper.outline]))
+        let ink = Rect::union_of(centres.chain(edges).chain(picked).chain([alone.paper.outline]))
             .unwrap_or(alone.paper.outline);
         match &alone.label {
             None => ink,

@@ -54,6 +54,10 @@ pub fn contradictions(views: &[View]) -> Vec<SizeConflict> {
 /// The length of an extent in a view; `None` if the view does not show it. Directions as in the
 /// table of part axes: x to the right, y away from the viewer of the front view, z up.
 fn shown(view: &View, extent: Extent) -> Option<f64> {
+    // A view at a scale of its own shows a piece of the part.
+    if view.scale.is_some() {
+        return None;
+    }
     let (width, height) = (view.bounds.width(), view.bounds.height());
     let (across, up) = match view.from {
         Direction::Front | Direction::Rear => (Extent::Width, Extent::Height),
