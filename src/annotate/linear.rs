@@ -6,6 +6,7 @@ use super::candidate::{Candidate, Ground, Seat, is_on, side_towards};
 use super::member::{Axes, End, Member, Spot};
 use super::sketch::Sketch;
 use crate::spec::{Pin, Side};
+use crate::style::SheetSide;
 
 /// All candidates of `size` that the pin allows.
 pub(super) fn candidates(size: &LinearSize, pin: &Pin, ground: &Ground<'_>) -> Vec<Candidate> {
@@ -72,13 +73,18 @@ pub(super) fn tier_cost(tier: u8, ground: &Ground<'_>) -> f64 {
     costs.tier_per_mm * f64::from(tier) * ground.practice.group.pitch
 }
 
-/// What standing on a side costs: below and right are the other sides in first angle, where the
-/// neighbours stand.
+/// What standing on a side costs that the style does not prefer.
 pub(super) fn side_cost(side: Side, ground: &Ground<'_>) -> f64 {
-    match side {
-        Side::Above | Side::Left | Side::Inside => 0.0,
-        Side::Below | Side::Right => ground.practice.style.cost.unary.other_side,
-    }
+    let style = ground.practice.style;
+    let side = match side {
+        Side::Above => SheetSide::Top,
+        Side::Below => SheetSide::Bottom,
+        Side::Left => SheetSide::Left,
+        Side::Right => SheetSide::Right,
+        Side::Inside => return 0.0,
+    };
+    let preferred = style.dimension.preferred_sides.contains(&side);
+    if preferred { 0.0 } else { style.cost.unary.other_side }
 }
 
 /// Places of the text with what they cost.

@@ -5,7 +5,8 @@ use std::collections::BTreeMap;
 use serde::Deserialize;
 
 use super::{
-    Costs, FormatSpec, FrameSpec, LinePitch, ReviewSpec, RevisionTableSpec, TitleBlockSpec,
+    Costs, FormatSpec, FrameSpec, LinePitch, ReviewSpec, RevisionTableSpec, SheetSide,
+    TitleBlockSpec,
 };
 
 /// A drafting practice.
@@ -144,6 +145,8 @@ pub struct DimensionSpec {
     pub arrow_gap: f64,
     /// Gap left round a text where a line would run through it.
     pub text_gap: f64,
+    /// Sides of a view that dimensions stand on if they may choose.
+    pub preferred_sides: Vec<SheetSide>,
     /// Most tiers on one side.
     pub tiers: u8,
     /// Circles of at least this many arrow lengths may be crossed by a line with two arrowheads.
