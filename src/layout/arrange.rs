@@ -147,7 +147,9 @@ fn tracks(
                 let at = places.get(&track(other)).copied().unwrap_or(0.0) - reference;
                 let (other_ink, other_outline) =
                     (along.span(&rooms[*j].ink), along.span(&rooms[*j].outline));
-                let by_ink = at + other_ink.1 + spacing.ink_gap + extra - (ink.0 - own);
+                // Rooms are measured to the middles of lines; ink reaches half a line further.
+                let ink_gap = spacing.ink_gap + practice.group.wide;
+                let by_ink = at + other_ink.1 + ink_gap + extra - (ink.0 - own);
                 let by_outline = at + other_outline.1 + spacing.outline_gap - (outline.0 - own);
                 place = place.max(by_ink).max(by_outline);
             }
@@ -187,7 +189,7 @@ fn settle(
         }
         let at_origin = Shift::to(Point::new(0.0, 0.0)).rect(&room.ink);
         let mut obstacles = blocks.clone();
-        obstacles.extend(taken.iter().map(|t| t.grown(spacing.ink_gap)));
+        obstacles.extend(taken.iter().map(|t| t.grown(spacing.ink_gap + practice.group.wide)));
         let free =
             best_shift(&[at_origin], at_origin, inner, &obstacles).ok_or(short(at_origin))?;
         taken.push(at_origin.shifted(free));
