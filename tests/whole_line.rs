@@ -56,6 +56,11 @@ proptest! {
             .map(|t| t.split(' ').next().unwrap_or("").replace(',', ".").parse::<f64>().unwrap_or(f64::NAN))
             .sum();
         prop_assert!((sum - width).abs() < 1e-6, "{} against {width}", links.annotation.text);
+        // Each link carries its own value on the sheet, and they add up too.
+        let item = drawn.scenes[0].items.iter().find(|i| i.id.as_str() == "links").expect("drawn");
+        let values: Vec<f64> = item.texts().filter_map(|t| t.value).map(|v| v.nominal).collect();
+        prop_assert_eq!(values.len(), holes.len() + 1);
+        prop_assert!((values.iter().sum::<f64>() - width).abs() < 1e-6);
     }
 
     #[test]

@@ -3,6 +3,7 @@
 use std::sync::Arc;
 
 use crate::geom::{Paper, Path, Point, Quad, Rect, Space, Vector};
+use crate::scene::Value;
 use crate::text::Run;
 
 /// Typeset text around its own origin: the beginning of the base line. x along the base line,
@@ -13,6 +14,8 @@ pub struct Label {
     pub runs: Vec<(Vector<Paper>, Arc<Run>)>,
     /// Boxes drawn around parts of it.
     pub frames: Vec<Rect<Paper>>,
+    /// What it says, where it is one value among several of its annotation.
+    pub value: Option<Value>,
     advance: f64,
 }
 

@@ -323,7 +323,14 @@ impl Binder<'_> {
         content: impl Fn(Vec<LinearSize>) -> Content,
     ) -> Said {
         let shapes = joined(members.iter().flat_map(|(_, shapes, _)| shapes.clone()));
-        let sizes: Vec<LinearSize> = members.into_iter().map(|(size, _, _)| size).collect();
+        let sizes: Vec<LinearSize> = members
+            .into_iter()
+            .map(|(size, _, value)| {
+                let mut label = Label::clone(&size.label);
+                label.value = Some(value);
+                LinearSize { label: Arc::new(label), ..size }
+            })
+            .collect();
         let text = sizes.iter().map(|s| label_text(&s.label)).collect::<Vec<_>>().join(" | ");
         said(content(sizes), None, text, shapes)
     }

@@ -8,6 +8,7 @@ use serde_json::{Value, json};
 use super::job::Job;
 use super::{Outcome, print};
 use crate::Drawn;
+use crate::annotate::Content;
 use crate::geom::{Curve, Point, View as ViewSpace};
 use crate::scene::{Item, ValueUnit};
 use crate::spec::{Direction, LineClass};
@@ -60,6 +61,29 @@ fn facts(drawn: &Drawn) -> Value {
     json!({ "parts": [], "views": views, "annotations": annotations(drawn) })
 }
 
+/// The values of a chain or a baseline set, in the order of its texts.
+fn members(content: &Content) -> Vec<Value> {
+    let sizes = match content {
+        Content::Chain(sizes) | Content::Baseline(sizes) => sizes.as_slice(),
+        Content::Linear(_)
+        | Content::Angular { .. }
+        | Content::Diameter { .. }
+        | Content::Radius { .. }
+        | Content::Leader { .. } => &[],
+    };
+    sizes
+        .iter()
+        .filter_map(|s| s.label.value)
+        .map(|v| {
+            json!({
+                "value": rounded(v.nominal),
+                "lower": v.limits.0.map(rounded),
+                "upper": v.limits.1.map(rounded),
+            })
+        })
+        .collect()
+}
+
 fn annotations(drawn: &Drawn) -> Vec<Value> {
     let item = |id: &crate::ident::ItemId| {
         drawn.scenes.iter().flat_map(|s| &s.items).find(|i| i.id == *id)
@@ -84,6 +108,7 @@ fn annotations(drawn: &Drawn) -> Vec<Value> {
                 "lower": limits.0.map(rounded),
                 "upper": limits.1.map(rounded),
                 "unit": unit,
+                "members": members(&a.content),
                 "box": item(&a.id).and_then(Item::bounds).map(|b| {
                     [b.min.x, b.min.y, b.max.x, b.max.y].map(rounded)
                 }),

@@ -104,8 +104,10 @@ fn head(head: &Head<Sheet>) -> Mark {
 }
 
 fn texts(label: &PlacedLabel<Sheet>) -> impl Iterator<Item = Mark> + '_ {
-    label.label.runs.iter().map(|(at, run)| {
+    label.label.runs.iter().enumerate().map(|(i, (at, run))| {
         let origin = label.at(crate::geom::Point::new(at.x, at.y));
-        Mark::Text(PlacedText::new(run.clone(), origin, label.angle))
+        let text = PlacedText::new(run.clone(), origin, label.angle);
+        // A size and its deviations are several runs; the first one carries what they say.
+        Mark::Text(PlacedText { value: label.label.value.filter(|_| i == 0), ..text })
     })
 }

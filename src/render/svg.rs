@@ -156,7 +156,7 @@ fn unique(id: &str, ids: &mut BTreeMap<String, u32>) -> String {
     candidate
 }
 
-fn set_value(group: &mut Element, value: &Value) {
+pub(super) fn set_value(group: &mut Element, value: &Value) {
     set(group, "data-value", &number::factor(value.nominal));
     if let Some(lower) = value.limits.0 {
         set(group, "data-lower", &number::factor(lower));

@@ -114,6 +114,9 @@ impl GlyphDefs {
 pub(super) fn text_group(text: &PlacedText, defs: &GlyphDefs, mode: TextMode) -> Element {
     let (name, value) = ink_attribute(text);
     let mut group = element("g", &[(name, &value)]);
+    if let Some(value) = &text.value {
+        super::svg::set_value(&mut group, value);
+    }
     if let Some(drawn) = drawn_pieces(text, defs, mode) {
         append(&mut group, drawn);
     }

@@ -122,6 +122,8 @@ pub struct PlacedText {
     pub origin: Point<Sheet>,
     /// How far the base line is turned, degrees counter-clockwise as the reader sees it.
     pub angle: f64,
+    /// What it says, where it is one value among several of its item: the links of a chain.
+    pub value: Option<Value>,
     /// Which ink.
     pub ink: Ink,
 }
@@ -258,7 +260,7 @@ impl PlacedText {
     /// Black text whose base line begins at `origin`.
     #[must_use]
     pub fn new(run: Arc<Run>, origin: Point<Sheet>, angle: f64) -> Self {
-        Self { run, origin, angle, ink: Ink::Drawing }
+        Self { run, origin, angle, value: None, ink: Ink::Drawing }
     }
 
     /// The box of its ink, turned with the text.

@@ -325,6 +325,18 @@ fn item_facts(node: Node<'_, '_>, index: usize) -> Result<Item, ReadError> {
     let kind: ItemKind =
         text.parse().map_err(|()| attribute_error(node, "data-kind", text, "a kind of item"))?;
     let id = node.attribute("id").map_or_else(|| format!("{kind}.{index}"), str::to_owned);
+    Ok(Item {
+        id: ItemId::new(id),
+        kind,
+        view: node.attribute("data-view").map(ViewId::new),
+        feature: node.attribute("data-feature").map(str::to_owned),
+        value: value_of(node)?,
+        marks: Vec::new(),
+    })
+}
+
+/// What a dimension, or one text of a set of dimensions, says.
+fn value_of(node: Node<'_, '_>) -> Result<Option<Value>, ReadError> {
     let value = number_of(node, "data-value")?;
     let limits = (number_of(node, "data-lower")?, number_of(node, "data-upper")?);
     let unit = match node.attribute("data-unit") {
@@ -332,14 +344,7 @@ fn item_facts(node: Node<'_, '_>, index: usize) -> Result<Item, ReadError> {
         None | Some("mm") => ValueUnit::Millimetre,
         Some(other) => return Err(attribute_error(node, "data-unit", other, "mm or deg")),
     };
-    Ok(Item {
-        id: ItemId::new(id),
-        kind,
-        view: node.attribute("data-view").map(ViewId::new),
-        feature: node.attribute("data-feature").map(str::to_owned),
-        value: value.map(|nominal| Value { nominal, limits, unit }),
-        marks: Vec::new(),
-    })
+    Ok(value.map(|nominal| Value { nominal, limits, unit }))
 }
 
 #[cfg(test)]

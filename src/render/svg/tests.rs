@@ -176,7 +176,7 @@ fn mark() -> impl Strategy<Value = Mark> {
     let text = ("[ -~⌀□↧⌴⌵°±×漢]{1,20}", place(), angle, 1.8..10.0, ink()).prop_map(
         |(content, origin, angle, h, ink)| {
             let run = Arc::new(Run::new(&content, f64::round(h * 10.0) / 10.0));
-            Mark::Text(PlacedText { run, origin, angle, ink })
+            Mark::Text(PlacedText { ink, ..PlacedText::new(run, origin, angle) })
         },
     );
     prop_oneof![stroke, fill, text]

@@ -42,7 +42,7 @@ pub fn marked(scene: &Scene, findings: &[Finding]) -> Scene {
             role: None,
             ink: Ink::Finding,
         };
-        let number = PlacedText { run, origin, angle: 0.0, ink: Ink::Finding };
+        let number = PlacedText { ink: Ink::Finding, ..PlacedText::new(run, origin, 0.0) };
         let id = ItemId::new(format!("finding-{}", i + 1));
         let marks = vec![Mark::Stroke(outline), Mark::Text(number)];
         out.items.push(Item::new(id, ItemKind::Finding, marks));

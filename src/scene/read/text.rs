@@ -59,6 +59,7 @@ pub(super) fn text(node: Node<'_, '_>, look: &Look) -> Result<Option<PlacedText>
         run: Arc::new(run),
         origin,
         angle: snapped(along.angle()),
+        value: None,
         ink: look.fill_ink().unwrap_or(Ink::Drawing),
     }))
 }
@@ -90,6 +91,14 @@ pub(super) fn text_group(
     look: &Look,
     found: Found,
 ) -> Result<Vec<Mark>, ReadError> {
+    let mut marks = run_of_text(node, look, found)?;
+    if let [Mark::Text(text)] = marks.as_mut_slice() {
+        text.value = super::value_of(node)?;
+    }
+    Ok(marks)
+}
+
+fn run_of_text(node: Node<'_, '_>, look: &Look, found: Found) -> Result<Vec<Mark>, ReadError> {
     let stated = stated_ink(node, look)?;
     let Found { marks, mut unseen } = found;
     let seen: Vec<_> = marks
