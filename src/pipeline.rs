@@ -7,7 +7,7 @@ use crate::scene::Scene;
 use crate::source::{Diagnostic, Diagnostics};
 use crate::spec::{Drawing, FormatChoice};
 use crate::style::{self, Style};
-use crate::view::{Extent, SizeConflict, View, contradictions, drawn_view};
+use crate::view::{SizeConflict, View, contradictions, drawn_view};
 
 /// A drawing with its sheets.
 #[derive(Clone, Debug)]
@@ -68,10 +68,9 @@ pub fn draw(drawing: Drawing, diagnostics: &mut Diagnostics) -> Option<Drawn> {
 #[must_use]
 pub fn check(drawn: &Drawn) -> Review {
     let misfits: Vec<Misfit> = drawn.layout.misfits.iter().map(misfit).collect();
-    let conflicts: Vec<Conflict> = contradictions(&drawn.views)
-        .iter()
-        .map(|c| conflict(c, &drawn.views, &drawn.style))
-        .collect();
+    let views: Vec<&View> = drawn.views.iter().collect();
+    let conflicts: Vec<Conflict> =
+        contradictions(&views).iter().map(|c| conflict(c, &drawn.views, &drawn.style)).collect();
     review(&ReviewInput {
         scenes: &drawn.scenes,
         style: &drawn.style,
@@ -93,22 +92,17 @@ fn misfit(m: &crate::sheet::Misfit) -> Misfit {
 }
 
 fn conflict(c: &SizeConflict, views: &[View], style: &Style) -> Conflict {
-    let (a, b) = (&views[c.views.0], &views[c.views.1]);
-    let extent = match c.extent {
-        Extent::Width => "width",
-        Extent::Height => "height",
-        Extent::Depth => "depth",
-    };
     let mm = |v: f64| style.number.length(v, None);
-    let (first, second) = (mm(c.lengths.0), mm(c.lengths.1));
+    let (first, second) = (mm(c.first_length), mm(c.second_length));
+    let span = |id: &crate::ident::ViewId| views.iter().find(|v| v.id == *id).map(|v| v.span);
     Conflict {
-        views: vec![a.id.clone(), b.id.clone()],
+        views: vec![c.first.clone(), c.second.clone()],
         message: format!(
-            "the part's {extent} is {first} in view `{}` and {second} in view `{}`",
-            a.id, b.id
+            "the part's {} is {first} in view `{}` and {second} in view `{}`",
+            c.extent, c.first, c.second
         ),
-        difference: (c.lengths.0 - c.lengths.1).abs(),
-        spans: vec![a.span, b.span],
+        difference: (c.first_length - c.second_length).abs(),
+        spans: [&c.first, &c.second].into_iter().filter_map(span).collect(),
     }
 }
 

@@ -11,6 +11,7 @@
 //! The numeric work (arc lengths, Bézier bounds) is done by [kurbo].
 
 mod curve;
+mod extreme;
 mod hit;
 mod point;
 mod rect;

@@ -103,6 +103,10 @@ pub struct DashSet {
 pub struct DashSpec {
     /// Leading dash, stretched so that the line begins and ends with one.
     pub dash: f64,
+    /// Shortest leading dash of a line with two of them; `dash` itself where the style has none. A
+    /// line too short for it is drawn without the pattern.
+    #[serde(default)]
+    pub least: Option<f64>,
     /// What follows it in each period: gap, mark, gap, … beginning and ending with a gap.
     pub rest: Vec<f64>,
 }

@@ -1,69 +1,178 @@
-//! Views of one part that contradict each other's sizes.
+//! Whether the views of a part agree on its size.
+//!
+//! Takes finished views; gives each pair of orthographic views of one part whose common extent
+//! differs: width in front, rear, top and bottom view, height in front, rear and side views, depth
+//! in top, bottom and side views. Sections and views with a break may show less than the whole
+//! part, never more. Isometric views, views without sharp edges and views at a scale of their own
+//! (pieces of the part, drawn larger) say nothing.
+
+use std::fmt;
 
 use super::edge::View;
-use crate::spec::Direction;
+use crate::ident::{PartId, ViewId};
+use crate::spec::{Direction, LineClass};
 
-/// An extent that two views must share.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+/// Extents that differ by no more than this agree, mm of the part: drawn coordinates are often
+/// rounded to hundredths.
+pub const AGREEMENT: f64 = 0.01;
+
+/// A direction of the part.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Hash)]
 pub enum Extent {
-    /// Along x of the part.
+    /// Along the part's x.
     Width,
-    /// Along z of the part.
+    /// Along the part's z.
     Height,
-    /// Along y of the part.
+    /// Along the part's y.
     Depth,
 }
 
-/// Two views that show one extent of a part at different lengths.
-#[derive(Clone, Copy, Debug, PartialEq)]
-pub struct SizeConflict {
-    /// Places of the two views in the list.
-    pub views: (usize, usize),
-    /// What they show.
-    pub extent: Extent,
-    /// Its length in each, mm of the part.
-    pub lengths: (f64, f64),
+impl fmt::Display for Extent {
+    fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
+        f.write_str(match self {
+            Self::Width => "width",
+            Self::Height => "height",
+            Self::Depth => "depth",
+        })
+    }
 }
 
-/// Extents may differ by this much, mm of the part: what a person loses in rounding.
-const AGREE: f64 = 0.01;
+/// Two views that contradict each other.
+#[derive(Clone, Debug, PartialEq)]
+pub struct SizeConflict {
+    /// The part that both show.
+    pub part: PartId,
+    /// In which direction of the part.
+    pub extent: Extent,
+    /// The view that comes first.
+    pub first: ViewId,
+    /// What it shows, mm.
+    pub first_length: f64,
+    /// The view that says otherwise.
+    pub second: ViewId,
+    /// What that one shows, mm.
+    pub second_length: f64,
+}
 
-/// Every pair of orthographic views of one part that disagree, each extent once per pair with the
-/// first view that shows it.
+/// Views whose sizes contradict those of the first whole view that shows the same extent, in the
+/// order of `views`.
 #[must_use]
-pub fn contradictions(views: &[View]) -> Vec<SizeConflict> {
+pub fn contradictions(views: &[&View]) -> Vec<SizeConflict> {
+    let seen: Vec<Seen<'_>> = views.iter().flat_map(|view| extents_of(view)).collect();
     let mut conflicts = Vec::new();
-    for extent in [Extent::Width, Extent::Height, Extent::Depth] {
-        for (j, view) in views.iter().enumerate() {
-            let Some(length) = shown(view, extent) else { continue };
-            let first = views[..j]
-                .iter()
-                .enumerate()
-                .filter(|(_, v)| v.part == view.part)
-                .find_map(|(i, v)| shown(v, extent).map(|l| (i, l)));
-            if let Some((i, other)) = first
-                && (other - length).abs() > AGREE
-            {
-                conflicts.push(SizeConflict { views: (i, j), extent, lengths: (other, length) });
-            }
+    for (i, second) in seen.iter().enumerate() {
+        let same =
+            |other: &Seen<'_>| other.view.part == second.view.part && other.extent == second.extent;
+        let Some(first) = seen.iter().position(|s| same(s) && s.is_whole) else { continue };
+        let is_pair = first < i || (!second.is_whole && first != i);
+        if is_pair && seen[first].contradicts(second) {
+            conflicts.push(seen[first].conflict(second));
         }
     }
     conflicts
 }
 
-/// The length of an extent in a view; `None` if the view does not show it. Directions as in the
-/// table of part axes: x to the right, y away from the viewer of the front view, z up.
-fn shown(view: &View, extent: Extent) -> Option<f64> {
-    // A view at a scale of its own shows a piece of the part.
-    if view.scale.is_some() {
-        return None;
+/// One extent as one view shows it.
+struct Seen<'a> {
+    view: &'a View,
+    extent: Extent,
+    length: f64,
+    is_whole: bool,
+}
+
+impl Seen<'_> {
+    /// For a whole view: whether `other` shows another size, or a part of it shows more.
+    fn contradicts(&self, other: &Self) -> bool {
+        let more = other.length - self.length;
+        more > AGREEMENT || (other.is_whole && more < -AGREEMENT)
     }
-    let (width, height) = (view.bounds.width(), view.bounds.height());
-    let (across, up) = match view.from {
-        Direction::Front | Direction::Rear => (Extent::Width, Extent::Height),
-        Direction::Top | Direction::Bottom => (Extent::Width, Extent::Depth),
-        Direction::Left | Direction::Right => (Extent::Depth, Extent::Height),
-        Direction::Iso => return None,
-    };
-    if across == extent { Some(width) } else { (up == extent).then_some(height) }
+
+    fn conflict(&self, second: &Self) -> SizeConflict {
+        SizeConflict {
+            part: self.view.part.clone(),
+            extent: self.extent,
+            first: self.view.id.clone(),
+            first_length: self.length,
+            second: second.view.id.clone(),
+            second_length: second.length,
+        }
+    }
+}
+
+fn extents_of(view: &View) -> Vec<Seen<'_>> {
+    let has = |class| view.edges.iter().any(|e| e.class == class);
+    let is_outline = has(LineClass::Visible) || has(LineClass::Hidden) || has(LineClass::Cut);
+    let speaks = is_outline && view.scale.is_none();
+    let (Some((across, up)), true) = (axes_of(view.from), speaks) else { return Vec::new() };
+    let is_whole = !view.is_section && !has(LineClass::Break);
+    let seen = |extent, length| Seen { view, extent, length, is_whole };
+    vec![seen(across, view.bounds.width()), seen(up, view.bounds.height())]
+}
+
+/// What a view shows to the right and upwards.
+fn axes_of(from: Direction) -> Option<(Extent, Extent)> {
+    match from {
+        Direction::Front | Direction::Rear => Some((Extent::Width, Extent::Height)),
+        Direction::Top | Direction::Bottom => Some((Extent::Width, Extent::Depth)),
+        Direction::Right | Direction::Left => Some((Extent::Depth, Extent::Height)),
+        Direction::Iso => None,
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::super::drawn_view;
+    use super::super::sample::*;
+    use super::*;
+    use crate::source::Diagnostics;
+    use crate::spec::ViewSpec;
+
+    fn view_of(spec: &ViewSpec) -> View {
+        drawn_view(spec, &mut Diagnostics::default()).expect("sound")
+    }
+
+    fn block(id: &str, from: Direction, width: f64, height: f64) -> View {
+        view_of(&spec(id, from, vec![rectangle("block", 0.0, 0.0, width, height)]))
+    }
+
+    #[test]
+    fn neighbours_that_differ_are_named_with_both_sizes() {
+        let views = [
+            block("front", Direction::Front, 80.0, 40.0),
+            block("top", Direction::Top, 80.0, 25.0),
+            block("side", Direction::Left, 26.0, 40.0),
+        ];
+        let found = contradictions(&views.iter().collect::<Vec<_>>());
+        let [c] = found.as_slice() else { panic!("{found:?}") };
+        assert_eq!((c.extent, c.first.as_str(), c.second.as_str()), (Extent::Depth, "top", "side"));
+        assert!((c.first_length - 25.0).abs() < 1e-9 && (c.second_length - 26.0).abs() < 1e-9);
+    }
+
+    #[test]
+    fn rounding_to_hundredths_is_no_contradiction() {
+        let views =
+            [block("a", Direction::Front, 80.0, 40.0), block("b", Direction::Bottom, 80.009, 9.0)];
+        assert!(contradictions(&views.iter().collect::<Vec<_>>()).is_empty());
+    }
+
+    #[test]
+    fn a_section_may_show_less_but_not_more() {
+        let cut = |width| {
+            let mut s = spec("cut", Direction::Front, vec![rectangle("b", 0.0, 0.0, width, 40.0)]);
+            s.is_section = true;
+            view_of(&s)
+        };
+        let front = block("front", Direction::Front, 80.0, 40.0);
+        assert!(contradictions(&[&cut(60.0), &front]).is_empty());
+        let found = contradictions(&[&cut(90.0), &front]);
+        assert_eq!(found.len(), 1);
+        assert_eq!(found[0].second.as_str(), "cut");
+    }
+
+    #[test]
+    fn views_of_different_parts_have_nothing_to_agree_on() {
+        let mut other = block("b", Direction::Top, 70.0, 9.0);
+        other.part = PartId::new("lid");
+        assert!(contradictions(&[&block("a", Direction::Front, 80.0, 40.0), &other]).is_empty());
+    }
 }

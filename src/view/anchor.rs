@@ -1,26 +1,41 @@
-//! Named places and sizes of a view.
+//! Named places of a view, and how a name such as `bolt.3.centre` finds one.
 //!
-//! A name is a shape's id, for a member of a repeat its number, and a place: `bolt.1.centre`. The id
-//! of a repeat alone names all members.
+//! A name is the id of a shape, then, after a dot, a place or a size of it. The id of a repeated
+//! shape stands for all its members, `bolt.3` for the third. What each kind of shape offers (sides
+//! and corners are those that the reader sees in this view, also for mirrored and turned members):
 //!
 //! | shape | places | sizes |
-//! | --- | --- | --- |
-//! | line | (itself), `start`, `end`, `middle` | `length` |
-//! | arc | `rim` or (itself), `centre`, `start`, `end`, `middle` | `radius` |
-//! | circle | `rim` or (itself), `centre` or `axis`, `left`, `right`, `top`, `bottom` | `diameter`, `radius` |
-//! | slot | `centre`, `start`, `end`, `axis`, `left`, `right`, `top`, `bottom` | `width`, `length`, `spacing` |
-//! | rectangle | `left`, `right`, `top`, `bottom`, `centre`, `top-left` … `bottom-right`; turned: `axis` | `width`, `height`, `corner_radius`; turned: `diameter`, `length` |
-//! | polygon, path | `p1` …, `e1` …, `left`, `right`, `top`, `bottom` | `e1.length`, `e1.radius` |
-//! | polar repeat | `pitch` | `pitch_diameter` |
+//! |---|---|---|
+//! | line | bare id (edge), `start`, `end`, `middle` | `length` |
+//! | arc | bare id or `rim` (round), `centre`, `start`, `end`, `middle` | `radius` |
+//! | circle | bare id or `rim` (round), `centre` or `axis`, `left`, `right`, `top`, `bottom` | `diameter`, `radius` |
+//! | slot | bare id or `rim` (round end), `centre`, `start`, `end` (centres of the ends), `axis`, `side1`, `side2`, `left`, `right`, `top`, `bottom` | `width`, `length` (overall), `spacing` (of the end centres), `radius` |
+//! | rectangle | `left`, `right`, `top`, `bottom` (edges), `centre`, `top-left`, `top-right`, `bottom-left`, `bottom-right` (sharp corners, also where rounded), `rounding` (round), `axis` if turned | `width`, `height`, `corner_radius`; turned: `diameter` (across the axis), `length` (along it) |
+//! | polygon, path | `p1`… (points), `e1`… (edges, straight or round), `left`, `right`, `top`, `bottom` (the outermost straight edge, else the outermost point) | `e1.length`, `e1.radius` |
+//! | polar group | `pitch` (round) | `pitch_diameter` |
+//!
+//! A side of a rectangle or slot that is no straight edge is the outermost point there.
 
-use std::collections::BTreeMap;
-
-use super::body::Body;
 use super::edge::{CentreFeature, View};
-use crate::geom::{Arc, Curve, Line, Point, Rect, View as ViewSpace};
+use super::figure::Figure;
+use crate::geom::{Arc, Line, Point, View as ViewSpace};
 use crate::ident::ShapeId;
 use crate::source::nearest;
 use crate::spec::{LineDirection, SizeSign};
+
+/// What an id of a view stands for.
+#[derive(Clone, Debug, PartialEq)]
+pub(super) enum Named {
+    /// One shape, or one member of a repeated one.
+    Shape(Figure),
+    /// A repeated shape.
+    Group {
+        /// Its members in order.
+        members: Vec<ShapeId>,
+        /// The circle through their centres, for a polar repeat.
+        pitch: Option<Arc<ViewSpace>>,
+    },
+}
 
 /// A place that an annotation can hold on to, in view space.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -79,54 +94,33 @@ pub struct AnchorError {
     pub help: String,
 }
 
-/// A shape of a view, by its id.
-#[derive(Clone, Debug)]
-pub(super) struct Named {
-    /// Its members; one for a shape that is not repeated.
-    pub members: Vec<(ShapeId, Body)>,
-    /// Whether its members have numbers.
-    pub repeated: bool,
-    /// The circle through the centres of a polar repeat.
-    pub pitch: Option<Arc<ViewSpace>>,
-}
-
 impl View {
-    /// The place that `name` stands for, once for each member that it names.
+    /// The place that `name` stands for, for each member of a group.
     ///
     /// # Errors
-    /// [`AnchorError`] if there is no such shape, or the shape has no such place.
+    /// [`AnchorError`] if no shape has the id, or if the shape has no such place.
     pub fn anchor(&self, name: &str) -> Result<Measured<Anchor>, AnchorError> {
-        let asked = self.find(name)?;
-        if asked.place == "pitch"
-            && let Some(circle) = asked.named.pitch
-        {
-            let (id, _) = &asked.members[0];
-            return Ok(Measured { members: vec![(id.clone(), Anchor::Round(circle))] });
+        let asked = self.split(name)?;
+        if let (Named::Group { pitch: Some(circle), .. }, "pitch") = (asked.named, asked.rest) {
+            return Ok(Measured { members: vec![(asked.id, Anchor::Round(*circle))] });
         }
-        asked.each(|body| {
-            let found = place(body, asked.place)?;
-            Some(match (found, body) {
-                (Anchor::Centre { at, .. }, Body::Circle(_)) => {
-                    Anchor::Centre { at, reach: self.cross_radius(at) }
-                }
-                _ => found,
-            })
-        })
+        self.each(&asked, |figure| Some(self.with_reach(figure, figure.place(asked.rest)?)))
+            .ok_or_else(|| asked.no_such("place", &self.places_of(asked.named)))
     }
 
-    /// The size that `name` stands for, once for each member that it names.
+    /// The size that `name` stands for, for each member of a group.
     ///
     /// # Errors
-    /// [`AnchorError`] if there is no such shape, or the shape has no such size.
+    /// [`AnchorError`] if no shape has the id, or if the shape has no such size.
     pub fn size(&self, name: &str) -> Result<Measured<Size>, AnchorError> {
-        let asked = self.find(name)?;
-        if asked.place == "pitch_diameter"
-            && let Some(circle) = asked.named.pitch
+        let asked = self.split(name)?;
+        if let (Named::Group { pitch: Some(circle), .. }, "pitch_diameter") =
+            (asked.named, asked.rest)
         {
-            let (id, _) = &asked.members[0];
-            return Ok(Measured { members: vec![(id.clone(), Size::Diameter(circle))] });
+            return Ok(Measured { members: vec![(asked.id, Size::Diameter(*circle))] });
         }
-        asked.each(|body| size(body, asked.place))
+        self.each(&asked, |figure| figure.size(asked.rest))
+            .ok_or_else(|| asked.no_such("size", &self.sizes_of(asked.named)))
     }
 
     /// Whether the longest axis of a turned body stands upright.
@@ -140,352 +134,318 @@ impl View {
         longest.is_some_and(|l| l.vector().y.abs() > l.vector().x.abs())
     }
 
-    /// Radius of the largest circle about a centre that has a level and upright cross; 0 if none
-    /// has, as on a pitch circle, whose holes have radial strokes.
-    fn cross_radius(&self, at: Point<ViewSpace>) -> f64 {
-        self.centres
-            .iter()
-            .filter_map(|c| match c {
-                CentreFeature::Cross { circle, turn, single: false, .. }
-                    if circle.centre.is_at(at) && turn.rem_euclid(90.0) < 1e-6 =>
-                {
-                    Some(circle.radius)
-                }
-                CentreFeature::Cross { .. }
-                | CentreFeature::Axis { .. }
-                | CentreFeature::Pitch { .. } => None,
-            })
-            .fold(0.0, f64::max)
-    }
-
-    /// The shape and the members that a name begins with, and what follows.
-    fn find<'a>(&'a self, name: &'a str) -> Result<Asked<'a>, AnchorError> {
-        let (id, rest) = name.split_once('.').unwrap_or((name, ""));
-        let Some(named) = self.names.get(id) else {
-            return Err(self.unknown_shape(id));
-        };
-        let (first, after) = rest.split_once('.').unwrap_or((rest, ""));
-        let (members, place) = match first.parse::<usize>() {
-            Ok(number) if named.repeated => {
-                let count = named.members.len();
-                let member = number.checked_sub(1).and_then(|i| named.members.get(i));
-                let member = member.ok_or_else(|| AnchorError {
-                    message: format!("`{id}` has no member {number}"),
-                    help: format!("its members are {id}.1 to {id}.{count}"),
-                })?;
-                (std::slice::from_ref(member), after)
+    /// The centre of a circle with the reach of the cross that is drawn round it, its own or that of
+    /// a larger concentric circle.
+    fn with_reach(&self, figure: &Figure, place: Anchor) -> Anchor {
+        match (figure, place) {
+            (Figure::Circle(_), Anchor::Centre { at, .. }) => {
+                Anchor::Centre { at, reach: self.cross_radius(at) }
             }
-            _ => (named.members.as_slice(), rest),
-        };
-        Ok(Asked { id, named, members, place, name })
+            _ => place,
+        }
     }
 
-    fn unknown_shape(&self, id: &str) -> AnchorError {
-        let ids: Vec<&str> = self.names.keys().map(ShapeId::as_str).collect();
-        let help = match nearest(id, ids.iter().copied()) {
+    fn cross_radius(&self, at: Point<ViewSpace>) -> f64 {
+        let crosses = self.centres.iter().filter_map(|c| match c {
+            CentreFeature::Cross { circle, turn, single: false, .. } => Some((circle, turn)),
+            CentreFeature::Cross { .. }
+            | CentreFeature::Axis { .. }
+            | CentreFeature::Pitch { .. } => None,
+        });
+        crosses
+            .filter(|(circle, turn)| circle.centre.is_at(at) && turn.rem_euclid(90.0) < 1e-6)
+            .fold(0.0, |reach, (circle, _)| circle.radius.max(reach))
+    }
+
+    /// The ids of the view's shapes, groups and members, in order.
+    pub fn shape_ids(&self) -> impl Iterator<Item = &ShapeId> {
+        self.names.keys()
+    }
+
+    /// The longest id that `name` begins with, and what follows it.
+    fn split<'a>(&'a self, name: &'a str) -> Result<Asked<'a>, AnchorError> {
+        let dots = name.rmatch_indices('.').map(|(i, _)| i);
+        for end in std::iter::once(name.len()).chain(dots) {
+            if let Some((id, named)) = self.names.get_key_value(&name[..end]) {
+                let rest = name.get(end + 1..).unwrap_or("");
+                return Ok(Asked { name, id: id.clone(), named, rest });
+            }
+        }
+        Err(self.no_shape(name))
+    }
+
+    fn no_shape(&self, name: &str) -> AnchorError {
+        let id = name.split_once('.').map_or(name, |(id, _)| id);
+        let groups: Vec<&str> = self.group_ids().collect();
+        let help = match nearest(id, groups.iter().copied()) {
             Some(near) => format!("did you mean `{near}`?"),
-            None if ids.len() <= 12 => format!("its shapes are {}", ids.join(", ")),
-            None => format!("it has {} shapes; give this one its id", ids.len()),
+            None => format!("its shapes are {}", listed(&groups)),
         };
         AnchorError { message: format!("view `{}` has no shape `{id}`", self.id), help }
     }
+
+    /// Ids as the spec gives them: groups and single shapes, not members.
+    fn group_ids(&self) -> impl Iterator<Item = &str> {
+        let members: std::collections::BTreeSet<&ShapeId> = self
+            .names
+            .values()
+            .flat_map(|n| match n {
+                Named::Group { members, .. } => members.as_slice(),
+                Named::Shape(_) => &[],
+            })
+            .collect();
+        self.names.keys().filter(move |id| !members.contains(id)).map(ShapeId::as_str)
+    }
+
+    fn each<T>(
+        &self,
+        asked: &Asked<'_>,
+        find: impl Fn(&Figure) -> Option<T>,
+    ) -> Option<Measured<T>> {
+        let members = match asked.named {
+            Named::Shape(figure) => vec![(asked.id.clone(), find(figure)?)],
+            Named::Group { members, .. } => members
+                .iter()
+                .map(|id| match self.names.get(id) {
+                    Some(Named::Shape(figure)) => Some((id.clone(), find(figure)?)),
+                    Some(Named::Group { .. }) | None => None,
+                })
+                .collect::<Option<Vec<_>>>()?,
+        };
+        Some(Measured { members })
+    }
+
+    fn places_of(&self, named: &Named) -> Vec<String> {
+        self.offers(named, Figure::place_names, "pitch")
+    }
+
+    fn sizes_of(&self, named: &Named) -> Vec<String> {
+        self.offers(named, Figure::size_names, "pitch_diameter")
+    }
+
+    fn offers(&self, named: &Named, of: fn(&Figure) -> Vec<String>, group: &str) -> Vec<String> {
+        match named {
+            Named::Shape(figure) => of(figure),
+            Named::Group { members, pitch } => {
+                let first = members.first().and_then(|id| self.names.get(id));
+                let mut names = first.map_or(Vec::new(), |first| self.offers(first, of, group));
+                names.extend(pitch.map(|_| group.to_owned()));
+                names
+            }
+        }
+    }
 }
 
-/// A name, taken apart.
+/// A name, split into what has the id and what is asked of it.
 struct Asked<'a> {
-    id: &'a str,
-    named: &'a Named,
-    members: &'a [(ShapeId, Body)],
-    place: &'a str,
     name: &'a str,
+    id: ShapeId,
+    named: &'a Named,
+    rest: &'a str,
 }
 
 impl Asked<'_> {
-    fn each<T>(&self, read: impl Fn(&Body) -> Option<T>) -> Result<Measured<T>, AnchorError> {
-        let members: Option<Vec<(ShapeId, T)>> =
-            self.members.iter().map(|(id, body)| Some((id.clone(), read(body)?))).collect();
-        members.map(|members| Measured { members }).ok_or_else(|| self.unknown_place())
-    }
-
-    fn unknown_place(&self) -> AnchorError {
-        let mut all = self.members.first().map_or_else(Vec::new, |(_, b)| vocabulary(b));
-        if self.named.pitch.is_some() {
-            all.extend(["pitch", "pitch_diameter"].map(str::to_owned));
+    fn no_such(&self, what: &str, has: &[String]) -> AnchorError {
+        let (id, rest) = (&self.id, self.rest);
+        if let (Named::Group { members, .. }, Some(number)) = (self.named, leading_number(rest)) {
+            let n = members.len();
+            return AnchorError {
+                message: format!("`{id}` has {n} members; there is no `{id}.{number}`"),
+                help: format!("they are `{id}.1` to `{id}.{n}`; `{id}` alone means all of them"),
+            };
         }
-        let words: Vec<&str> = all.iter().map(String::as_str).collect();
-        let help = match nearest(self.place, words.iter().copied()) {
-            Some(near) => format!("did you mean `{}.{near}`?", self.id),
-            None => format!("`{}` has {}", self.id, words.join(", ")),
+        let message = match rest {
+            "" => format!("`{}` alone is no {what}", self.name),
+            _ => format!("`{id}` has no {what} `{rest}`"),
         };
-        let message = if self.place.is_empty() {
-            format!("`{}` is a whole shape here; name a place or a size of it", self.name)
-        } else {
-            format!("`{}` has no place or size `{}`", self.id, self.place)
+        let near = nearest(rest, has.iter().map(String::as_str));
+        let help = match near {
+            Some(near) => format!("did you mean `{id}.{near}`?"),
+            None if has.is_empty() => format!("it has no {what}s"),
+            None => format!("its {what}s are {}", listed(has)),
         };
         AnchorError { message, help }
     }
 }
 
-fn place(body: &Body, name: &str) -> Option<Anchor> {
-    match body {
-        Body::Line(l) => line_place(l, name),
-        Body::Arc(a) => arc_place(a, name),
-        Body::Circle(a) => match name {
-            "" | "rim" => Some(Anchor::Round(*a)),
-            "centre" | "axis" => Some(Anchor::Centre { at: a.centre, reach: a.radius }),
-            side => Some(Anchor::Point(a.towards(quadrant(side)?))),
-        },
-        Body::Slot { from, to } => match name {
-            "centre" => Some(Anchor::Point(from.centre.middle(to.centre))),
-            "start" => Some(Anchor::Centre { at: from.centre, reach: from.radius }),
-            "end" => Some(Anchor::Centre { at: to.centre, reach: to.radius }),
-            "axis" => slot_axis(from, to).map(Anchor::Axis),
-            side => extreme(&body.curves(), side),
-        },
-        Body::Rectangle { corners, axis, radius } => rectangle_place(corners, *radius, *axis, name),
-        Body::Outline(_) => outline_place(&body.curves(), name),
-    }
+fn leading_number(rest: &str) -> Option<u64> {
+    rest.split('.').next()?.parse().ok()
 }
 
-fn line_place(l: &Line<ViewSpace>, name: &str) -> Option<Anchor> {
-    match name {
-        "" => Some(Anchor::Edge(*l)),
-        "start" => Some(Anchor::Point(l.from)),
-        "end" => Some(Anchor::Point(l.to)),
-        "middle" => Some(Anchor::Point(l.at(0.5))),
-        _ => None,
-    }
+/// Most names that a message lists.
+const MOST_LISTED: usize = 12;
+
+fn listed<T: AsRef<str>>(names: &[T]) -> String {
+    let shown: Vec<String> =
+        names.iter().take(MOST_LISTED).map(|n| format!("`{}`", n.as_ref())).collect();
+    let more = if names.len() > MOST_LISTED { ", …" } else { "" };
+    format!("{}{more}", shown.join(", "))
 }
 
-fn arc_place(a: &Arc<ViewSpace>, name: &str) -> Option<Anchor> {
-    match name {
-        "" | "rim" => Some(Anchor::Round(*a)),
-        "centre" => Some(Anchor::Point(a.centre)),
-        "start" => Some(Anchor::Point(a.towards(a.start))),
-        "end" => Some(Anchor::Point(a.towards(a.start + a.sweep))),
-        "middle" => Some(Anchor::Point(a.towards(a.middle()))),
-        _ => None,
-    }
-}
+#[cfg(test)]
+mod tests {
+    use super::super::sample::*;
+    use super::*;
+    use crate::geom::Vector;
+    use crate::spec::{Axis, Outline, Repeat, Shape};
 
-fn rectangle_place(
-    corners: &[Point<ViewSpace>; 4],
-    radius: f64,
-    axis: Option<Line<ViewSpace>>,
-    name: &str,
-) -> Option<Anchor> {
-    let centre = corners[0].middle(corners[2]);
-    match name {
-        "centre" => return Some(Anchor::Point(centre)),
-        "axis" => return axis.map(Anchor::Axis),
-        _ => {}
-    }
-    if let Some((vertical, horizontal)) = name.split_once('-') {
-        let up = side_sign(vertical, "top", "bottom")?;
-        let right = side_sign(horizontal, "right", "left")?;
-        let value = |p: &Point<ViewSpace>| p.x * right + p.y * up;
-        let corner = corners.iter().max_by(|a, b| value(a).total_cmp(&value(b)));
-        return corner.map(|p| Anchor::Point(*p));
-    }
-    let degrees = quadrant(name)?;
-    let towards = crate::geom::Vector::<ViewSpace>::at_angle(degrees);
-    let value = |l: &Line<ViewSpace>| (l.at(0.5) - centre).dot(towards);
-    let side = Body::sides(corners).into_iter().max_by(|a, b| value(a).total_cmp(&value(b)));
-    // Extension lines begin where the straight part ends, not at a corner that is not there.
-    side.map(|l| Anchor::Edge(Body::straight(&l, radius)))
-}
-
-fn outline_place(curves: &[Curve<ViewSpace>], name: &str) -> Option<Anchor> {
-    if let Some(n) = numbered(name, 'p') {
-        return vertices(curves).get(n).map(|p| Anchor::Point(*p));
-    }
-    if let Some(n) = name.split('.').next().and_then(|first| numbered(first, 'e')) {
-        let rest = name.split_once('.').map_or("", |(_, r)| r);
-        return match curves.get(n)? {
-            Curve::Line(l) => line_place(l, rest),
-            Curve::Arc(a) => arc_place(a, rest),
-            Curve::Ellipse(_) | Curve::Cubic(_) => None,
+    fn plate() -> View {
+        let rounded = Outline::Rectangle {
+            corner: p(-60.0, -40.0),
+            size: Vector::new(120.0, 80.0),
+            corner_radius: 10.0,
+            turned: None,
         };
+        let slot = Outline::Slot { from: p(-20.0, 30.0), to: p(20.0, 30.0), width: 8.0 };
+        view(vec![
+            shape("plate", rounded),
+            circle("rim", 0.0, 0.0, 50.0),
+            polar(circle("bolt", 20.0, 0.0, 6.0), 4),
+            shape("slot", slot),
+            path("tab", "M 60 0 L 80 0 A 10 10 0 0 1 80 20 L 60 20 Z"),
+            turned("shaft", 100.0, -10.0, 40.0, 20.0),
+            line("keel", (0.0, -50.0), (30.0, -90.0)),
+        ])
     }
-    extreme(curves, name)
-}
 
-/// The extreme straight edge in a direction if the extreme is an edge, else the extreme point.
-fn extreme(curves: &[Curve<ViewSpace>], side: &str) -> Option<Anchor> {
-    let towards = crate::geom::Vector::<ViewSpace>::at_angle(quadrant(side)?);
-    let value = |p: Point<ViewSpace>| p.x * towards.x + p.y * towards.y;
-    let bounds = Rect::union_of(curves.iter().map(Curve::bounds))?;
-    let limit = bounds.corners().map(value).into_iter().fold(f64::NEG_INFINITY, f64::max);
-    let on_limit = |p: Point<ViewSpace>| (value(p) - limit).abs() <= crate::geom::COINCIDENT;
-    let edge = curves.iter().find_map(|c| match c {
-        Curve::Line(l) if on_limit(l.from) && on_limit(l.to) => Some(Anchor::Edge(*l)),
-        _ => None,
-    });
-    edge.or_else(|| {
-        curves.iter().find_map(|c| match c {
-            Curve::Arc(a) => {
-                let p = a.towards(quadrant(side)?);
-                (a.covers(quadrant(side)?) && on_limit(p)).then_some(Anchor::Point(p))
-            }
-            other => {
-                let ends = [other.start(), other.end()];
-                ends.into_iter().find(|p| on_limit(*p)).map(Anchor::Point)
-            }
-        })
-    })
-}
+    fn one<T: Clone>(found: Result<Measured<T>, AnchorError>) -> T {
+        let found = found.expect("a name that exists");
+        assert_eq!(found.members.len(), 1);
+        found.members[0].1.clone()
+    }
 
-fn size(body: &Body, name: &str) -> Option<Size> {
-    let between =
-        |from, to| Size::Distance { from, to, direction: LineDirection::Auto, sign: None };
-    match body {
-        Body::Line(l) => (name == "length").then(|| ends(l)),
-        Body::Arc(a) => (name == "radius").then_some(Size::Radius(*a)),
-        Body::Circle(a) => match name {
-            "diameter" => Some(Size::Diameter(*a)),
-            "radius" => Some(Size::Radius(*a)),
-            _ => None,
-        },
-        Body::Slot { from, to } => {
-            let curves = body.curves();
-            let edge = |i: usize| match curves.get(i) {
-                Some(Curve::Line(l)) => Some(Anchor::Edge(*l)),
-                _ => None,
+    fn length(from: Anchor, to: Anchor) -> f64 {
+        let at = |a: Anchor| match a {
+            Anchor::Point(at) | Anchor::Centre { at, .. } => at,
+            Anchor::Edge(l) | Anchor::Axis(l) => l.at(0.5),
+            Anchor::Round(a) => a.centre,
+        };
+        at(from).distance(at(to))
+    }
+
+    #[test]
+    fn places_lie_where_the_table_says() {
+        let v = plate();
+        let expected = [
+            ("rim.left", (-25.0, 0.0)),
+            ("rim.centre", (0.0, 0.0)),
+            ("plate.top-right", (60.0, 40.0)),
+            ("plate.centre", (0.0, 0.0)),
+            ("bolt.2.centre", (0.0, 20.0)),
+            ("tab.p3", (80.0, 20.0)),
+            ("tab.right", (90.0, 10.0)),
+            ("slot.right", (24.0, 30.0)),
+            ("slot.start", (-20.0, 30.0)),
+            ("keel.middle", (15.0, -70.0)),
+        ];
+        for (name, (x, y)) in expected {
+            let at = match one(v.anchor(name)) {
+                Anchor::Point(at) | Anchor::Centre { at, .. } => at,
+                other => panic!("{name}: {other:?}"),
             };
-            match name {
-                "width" => Some(between(edge(0)?, edge(2)?)),
-                "spacing" => Some(ends(&Line::new(from.centre, to.centre))),
-                "length" => slot_axis(from, to).map(|l| ends(&l)),
-                _ => None,
-            }
-        }
-        Body::Rectangle { corners, radius, axis } => {
-            let side = |name| rectangle_place(corners, *radius, *axis, name);
-            let level = axis.map(|l| l.vector().x.abs() >= l.vector().y.abs());
-            match (name, level) {
-                ("width", _) | ("length", Some(true)) | ("diameter", Some(false)) => {
-                    Some(signed(between(side("left")?, side("right")?), name))
-                }
-                ("height", _) | ("length", Some(false)) | ("diameter", Some(true)) => {
-                    Some(signed(between(side("bottom")?, side("top")?), name))
-                }
-                ("corner_radius", _) if *radius > 0.0 => {
-                    body.curves().into_iter().find_map(|c| match c {
-                        Curve::Arc(a) => Some(Size::Radius(a)),
-                        Curve::Line(_) | Curve::Ellipse(_) | Curve::Cubic(_) => None,
-                    })
-                }
-                _ => None,
-            }
-        }
-        Body::Outline(_) => outline_size(&body.curves(), name),
-    }
-}
-
-/// A distance across a turned body is a diameter.
-fn signed(size: Size, name: &str) -> Size {
-    match size {
-        Size::Distance { from, to, direction, .. } if name == "diameter" => {
-            Size::Distance { from, to, direction, sign: Some(SizeSign::Diameter) }
-        }
-        other => other,
-    }
-}
-
-fn outline_size(curves: &[Curve<ViewSpace>], name: &str) -> Option<Size> {
-    let (edge, what) = name.split_once('.')?;
-    match (curves.get(numbered(edge, 'e')?)?, what) {
-        (Curve::Line(l), "length") => Some(ends(l)),
-        (Curve::Arc(a), "radius") => Some(Size::Radius(*a)),
-        (Curve::Arc(a), "diameter") if a.is_full() => Some(Size::Diameter(*a)),
-        _ => None,
-    }
-}
-
-fn ends(l: &Line<ViewSpace>) -> Size {
-    Size::Distance {
-        from: Anchor::Point(l.from),
-        to: Anchor::Point(l.to),
-        direction: LineDirection::Aligned,
-        sign: None,
-    }
-}
-
-fn slot_axis(from: &Arc<ViewSpace>, to: &Arc<ViewSpace>) -> Option<Line<ViewSpace>> {
-    let u = (to.centre - from.centre).unit()?;
-    Some(Line::new(from.centre - u * from.radius, to.centre + u * to.radius))
-}
-
-/// Places between which the curves run, each once.
-fn vertices(curves: &[Curve<ViewSpace>]) -> Vec<Point<ViewSpace>> {
-    let mut points: Vec<Point<ViewSpace>> = Vec::new();
-    for c in curves {
-        for p in [c.start(), c.end()] {
-            let first_of_loop = points.first().is_some_and(|f| f.is_at(p)) && points.len() > 1;
-            if points.last().is_none_or(|l| !l.is_at(p)) && !first_of_loop {
-                points.push(p);
-            }
+            assert!(at.distance(p(x, y)) < 1e-9, "{name}: {at:?}");
         }
     }
-    points
-}
 
-/// The place in a list that `p3` or `e3` names, counted from 1.
-fn numbered(name: &str, letter: char) -> Option<usize> {
-    name.strip_prefix(letter)?.parse::<usize>().ok()?.checked_sub(1)
-}
+    #[test]
+    fn sides_are_edges_where_they_are_straight() {
+        let v = plate();
+        let edge = |name: &str| match one(v.anchor(name)) {
+            Anchor::Edge(l) | Anchor::Axis(l) => l,
+            other => panic!("{name}: {other:?}"),
+        };
+        assert!((edge("plate.left").length() - 60.0).abs() < 1e-9);
+        assert!((edge("slot.top").at(0.5).y - 34.0).abs() < 1e-9);
+        assert!((edge("tab.left").length() - 20.0).abs() < 1e-9);
+        assert!((edge("keel").length() - 50.0).abs() < 1e-9);
+        assert!((edge("shaft.axis").length() - 40.0).abs() < 1e-9);
+        assert!(matches!(one(v.anchor("rim")), Anchor::Round(a) if a.radius == 25.0));
+        assert!(matches!(one(v.anchor("tab.e2")), Anchor::Round(a) if a.radius == 10.0));
+    }
 
-fn quadrant(side: &str) -> Option<f64> {
-    match side {
-        "right" => Some(0.0),
-        "top" => Some(90.0),
-        "left" => Some(180.0),
-        "bottom" => Some(270.0),
-        _ => None,
+    #[test]
+    fn a_group_answers_for_all_its_members() {
+        let v = plate();
+        let all = v.anchor("bolt.centre").expect("four of them");
+        let ids: Vec<&str> = all.members.iter().map(|(id, _)| id.as_str()).collect();
+        assert_eq!(ids, ["bolt.1", "bolt.2", "bolt.3", "bolt.4"]);
+        assert_eq!(v.size("bolt.diameter").expect("equal holes").members.len(), 4);
+        assert!(matches!(one(v.anchor("bolt.pitch")), Anchor::Round(a) if a.radius == 20.0));
+        assert!(
+            matches!(one(v.size("bolt.pitch_diameter")), Size::Diameter(a) if a.radius == 20.0)
+        );
+    }
+
+    #[test]
+    fn sizes_measure_what_they_say() {
+        let v = plate();
+        let measured = |name: &str| match one(v.size(name)) {
+            Size::Diameter(a) => 2.0 * a.radius,
+            Size::Radius(a) => a.radius,
+            Size::Distance { from, to, .. } => length(from, to),
+        };
+        let expected = [
+            ("rim.diameter", 50.0),
+            ("rim.radius", 25.0),
+            ("plate.width", 120.0),
+            ("plate.height", 80.0),
+            ("plate.corner_radius", 10.0),
+            ("slot.width", 8.0),
+            ("slot.length", 48.0),
+            ("slot.spacing", 40.0),
+            ("shaft.diameter", 20.0),
+            ("shaft.length", 40.0),
+            ("keel.length", 50.0),
+            ("tab.e1.length", 20.0),
+            ("tab.e2.radius", 10.0),
+        ];
+        for (name, value) in expected {
+            assert!((measured(name) - value).abs() < 1e-9, "{name}: {}", measured(name));
+        }
+        let Size::Distance { sign, direction, .. } = one(v.size("shaft.diameter")) else {
+            panic!()
+        };
+        assert_eq!((sign, direction), (Some(SizeSign::Diameter), LineDirection::Vertical));
+    }
+
+    #[test]
+    fn a_wrong_name_gets_a_way_out() {
+        let v = plate();
+        let error = |name: &str| v.anchor(name).expect_err("no such place");
+        assert_eq!(error("plat.left").message, "view `front` has no shape `plat`");
+        assert_eq!(error("plat.left").help, "did you mean `plate`?");
+        assert_eq!(error("plate.lefft").help, "did you mean `plate.left`?");
+        assert_eq!(error("bolt.9.centre").message, "`bolt` has 4 members; there is no `bolt.9`");
+        assert_eq!(error("plate").message, "`plate` alone is no place");
+        assert!(error("keel.rim").help.contains("`start`, `end`, `middle`"));
+        assert!(error("").message.contains("no shape"));
+        let size = v.size("keel.diameter").expect_err("a line has none");
+        assert_eq!(size.help, "its sizes are `length`");
+    }
+
+    #[test]
+    fn sides_of_members_are_those_that_the_reader_sees() {
+        let wide = || rectangle("bar", 10.0, -2.0, 30.0, 4.0);
+        let v = view(vec![
+            polar(wide(), 4),
+            Shape {
+                id: ShapeId::new("ear"),
+                repeat: Some(Repeat::Mirror { axis: Axis::Y, at: -100.0 }),
+                ..wide()
+            },
+        ]);
+        for name in ["bar.1", "bar.2", "bar.3", "bar.4", "ear.1", "ear.2"] {
+            let side = |side: &str| match one(v.anchor(&format!("{name}.{side}"))) {
+                Anchor::Edge(l) => l.at(0.5),
+                other => panic!("{other:?}"),
+            };
+            assert!(side("left").x < side("right").x && side("bottom").y < side("top").y, "{name}");
+            assert!((side("left").y - side("right").y).abs() < 1e-9, "{name}");
+        }
+        let height = |name: &str| match one(v.size(name)) {
+            Size::Distance { from, to, .. } => length(from, to),
+            other => panic!("{other:?}"),
+        };
+        assert_eq!((height("bar.1.height"), height("bar.2.height")), (4.0, 30.0));
     }
 }
-
-fn side_sign(name: &str, positive: &str, negative: &str) -> Option<f64> {
-    if name == positive { Some(1.0) } else { (name == negative).then_some(-1.0) }
-}
-
-/// The places and sizes that a member has, for messages.
-fn vocabulary(body: &Body) -> Vec<String> {
-    let sides = ["left", "right", "top", "bottom"];
-    let words: Vec<&str> = match body {
-        Body::Line(_) => vec!["start", "end", "middle", "length"],
-        Body::Arc(_) => vec!["rim", "centre", "start", "end", "middle", "radius"],
-        Body::Circle(_) => {
-            [vec!["rim", "centre", "axis"], sides.to_vec(), vec!["diameter", "radius"]].concat()
-        }
-        Body::Slot { .. } => [
-            vec!["centre", "start", "end", "axis"],
-            sides.to_vec(),
-            vec!["width", "length", "spacing"],
-        ]
-        .concat(),
-        Body::Rectangle { radius, axis, .. } => {
-            let mut all = sides.to_vec();
-            all.extend(["centre", "top-left", "top-right", "bottom-left", "bottom-right"]);
-            all.extend(["width", "height"]);
-            if *radius > 0.0 {
-                all.push("corner_radius");
-            }
-            if axis.is_some() {
-                all.extend(["axis", "diameter", "length"]);
-            }
-            all
-        }
-        Body::Outline(_) => {
-            let curves = body.curves();
-            let edges = (1..=curves.len()).map(|i| format!("e{i}"));
-            let points = (1..=vertices(&curves).len()).map(|i| format!("p{i}"));
-            let sides = sides.map(str::to_owned);
-            return edges.chain(points).chain(sides).collect();
-        }
-    };
-    words.into_iter().map(str::to_owned).collect()
-}
-
-/// The shapes of a view by their ids.
-pub(super) type Names = BTreeMap<ShapeId, Named>;

@@ -1,6 +1,8 @@
 //! A finished view in view space.
 
-use super::anchor::Names;
+use std::collections::BTreeMap;
+
+use super::anchor::Named;
 use crate::geom::{Arc, Curve, Line, Path, Rect, View as ViewSpace};
 use crate::ident::{PartId, ShapeId, ViewId};
 use crate::source::Span;
@@ -32,7 +34,7 @@ pub struct View {
     pub regions: Vec<Region>,
     /// Box around visible, hidden and cut edges: the extent of the part in this view.
     pub bounds: Rect<ViewSpace>,
-    pub(super) names: Names,
+    pub(super) names: BTreeMap<ShapeId, Named>,
 }
 
 /// One curve of a view.

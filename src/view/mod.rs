@@ -8,18 +8,24 @@
 
 mod agreement;
 mod anchor;
-mod body;
 mod centre;
+mod centre_lines;
+mod coincide;
+mod crossing;
 mod dash;
 mod drawn;
 mod edge;
+mod figure;
 mod hatch;
 mod paper;
 mod path_data;
+mod places;
 mod precedence;
 mod repeat;
+#[cfg(test)]
+mod sample;
 
-pub use agreement::{Extent, SizeConflict, contradictions};
+pub use agreement::{AGREEMENT, Extent, SizeConflict, contradictions};
 pub use anchor::{Anchor, AnchorError, Measured, Size};
 pub use drawn::drawn_view;
 pub use edge::{CentreFeature, Edge, Region, View};

@@ -1,333 +1,351 @@
-//! Which line is drawn where several coincide.
+//! Which line stays where lines coincide.
 //!
-//! Order after ISO 128-2 as common practice reads it: cut and visible edges win over everything,
-//! hidden ones over centre lines, those over adjacent parts, all over construction lines. Smooth
-//! edges give way to visible and cut ones only. What a loser shows beyond the winner stays.
+//! Takes the edges of a view as its shapes make them; gives edges of which no two lie on one
+//! another (but for hidden ones under seen smooth ones, which the contract keeps apart). The order:
+//! visible and cut edges remove everything under them; hidden and smooth ones remove centre lines,
+//! adjacent parts, break and construction lines, in this order of strength (ISO 128-2 and common
+//! practice). Of equal classes, and of whole lines that coincide, one stays with the shapes of both.
 
-use crate::geom::{Arc, COINCIDENT, Curve, View as ViewSpace};
+use super::coincide::{CurveIndex, Stretch, across_start, covered};
+use super::edge::Edge;
+use crate::geom::{COINCIDENT, Curve, View};
 use crate::ident::ShapeId;
 use crate::spec::LineClass;
 
-use super::edge::Edge;
+/// What the edge of one class does to that of another under it.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+enum Meeting {
+    /// It removes it.
+    Removes,
+    /// They are one edge of both shapes.
+    Merges,
+    /// It leaves it alone.
+    Leaves,
+}
 
-/// Sine of the angle within which two lines have one direction: over a metre they then stray by
-/// less than the distance at which lines coincide.
-const ONE_DIRECTION: f64 = 1e-7;
+/// Most pairs of edges that may lie near one another; an ordinary view has a few for each edge.
+const MOST_PAIRS: usize = 4_000_000;
 
-/// The edges with what is covered taken away and equals drawn once, in walking order.
-pub(super) fn settle(edges: Vec<Edge>) -> Vec<Edge> {
-    let mut pieces: Vec<(usize, f64, Edge)> = Vec::new();
-    let mut lines: Vec<(usize, Run)> = Vec::new();
-    let mut arcs: Vec<(usize, Arc<ViewSpace>)> = Vec::new();
+/// Most edges of one class that may lie on one edge: each may cut it and lends its name to the
+/// pieces, so their number grows with the square.
+const MOST_EQUALS: usize = 1000;
+
+/// So many edges lie on one another that the view cannot be meant.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, thiserror::Error)]
+#[error("thousands of its edges lie on one another")]
+pub(super) struct Crowd;
+
+/// The edges without what lies under stronger ones, in the order of `edges`.
+///
+/// # Errors
+/// [`Crowd`] instead of running for minutes.
+pub(super) fn resolved(edges: Vec<Edge>) -> Result<Vec<Edge>, Crowd> {
+    let mut pairs = 0;
+    let curves: Vec<Curve<View>> = edges.iter().map(|e| e.curve).collect();
+    let index = CurveIndex::new(&curves, COINCIDENT);
+    let mut kept = Vec::with_capacity(edges.len());
     for (i, edge) in edges.iter().enumerate() {
-        match &edge.curve {
-            Curve::Line(l) => lines.extend(Run::of(l).map(|r| (i, r))),
-            Curve::Arc(a) => arcs.push((i, *a)),
-            Curve::Ellipse(_) | Curve::Cubic(_) => {
-                // Free curves coincide only where they are copies of each other.
-                let copied = edges[..i].iter().any(|e| {
-                    e.curve == edge.curve
-                        && (e.class == edge.class || gives_way(edge.class, e.class))
-                });
-                if !copied {
-                    pieces.push((i, 0.0, edge.clone()));
+        let mut fate = Fate::default();
+        let near = index.neighbours(&edge.curve);
+        pairs += near.len();
+        if pairs > MOST_PAIRS {
+            return Err(Crowd);
+        }
+        for j in near.into_iter().filter(|j| *j != i) {
+            let other = &edges[j];
+            match meeting(other.class, edge.class) {
+                Meeting::Leaves => fate.shared.extend(named_after(edge, other).map(|s| (s, j))),
+                Meeting::Removes => fate.lost.extend(covered(&edge.curve, &other.curve)),
+                // The first of equals stays and takes the names of the later ones.
+                Meeting::Merges if j < i => fate.lost.extend(covered(&edge.curve, &other.curve)),
+                Meeting::Merges => {
+                    let stretches = covered(&edge.curve, &other.curve).into_iter();
+                    fate.shared.extend(stretches.map(|s| (s, j)));
                 }
             }
         }
-    }
-    for cluster in clusters(lines, |r| [r.angle, r.offset]) {
-        pieces.extend(settle_lines(&cluster, &edges));
-    }
-    for cluster in clusters(arcs, |a| [a.radius, a.centre.x, a.centre.y]) {
-        pieces.extend(settle_arcs(&cluster, &edges));
-    }
-    pieces.sort_by(|a, b| a.0.cmp(&b.0).then(a.1.total_cmp(&b.1)));
-    pieces.into_iter().map(|(_, _, e)| e).collect()
-}
-
-/// Whether a line of class `loser` is not drawn where one of class `winner` runs.
-fn gives_way(loser: LineClass, winner: LineClass) -> bool {
-    use LineClass::{Adjacent, Break, Centre, Construction, Cut, Hidden, Smooth, Visible};
-    match loser {
-        Cut => false,
-        Visible => winner == Cut,
-        Hidden | Smooth | Break => matches!(winner, Cut | Visible),
-        Centre => matches!(winner, Cut | Visible | Hidden),
-        Adjacent => matches!(winner, Cut | Visible | Hidden | Centre),
-        Construction => {
-            matches!(winner, Cut | Visible | Hidden | Smooth | Centre | Adjacent | Break)
+        if fate.shared.len() > MOST_EQUALS {
+            return Err(Crowd);
         }
+        fate.apply(i, edge, &edges, &mut kept);
+    }
+    Ok(kept)
+}
+
+/// All of `edge` if it removes `other` and the two coincide from end to end: then it keeps the names
+/// of both. One that only lies under a part of it would cut it in pieces for nothing that is seen.
+fn named_after(edge: &Edge, other: &Edge) -> Option<Stretch> {
+    if meeting(edge.class, other.class) != Meeting::Removes {
+        return None;
+    }
+    let is_whole = |on: &Curve<View>, by: &Curve<View>| matches!(covered(on, by).as_slice(), [s] if s.from == 0.0 && s.to == 1.0);
+    let both = is_whole(&edge.curve, &other.curve) && is_whole(&other.curve, &edge.curve);
+    both.then_some(Stretch { from: 0.0, to: 1.0 })
+}
+
+fn meeting(upper: LineClass, lower: LineClass) -> Meeting {
+    if upper == lower {
+        return Meeting::Merges;
+    }
+    match rank(upper).cmp(&rank(lower)) {
+        std::cmp::Ordering::Less => Meeting::Removes,
+        // Cut edges are drawn as visible ones are; the cut one says more.
+        std::cmp::Ordering::Equal if upper == LineClass::Cut => Meeting::Removes,
+        // Hidden and smooth: a seen tangent edge hides nothing sharp behind it.
+        std::cmp::Ordering::Equal | std::cmp::Ordering::Greater => Meeting::Leaves,
     }
 }
 
-/// A straight edge by its supporting line and its stretch on it.
-#[derive(Clone, Copy)]
-struct Run {
-    /// Direction, radians in (−π/2, π/2].
-    angle: f64,
-    /// Signed distance of the supporting line from the origin.
-    offset: f64,
-    /// Places of its ends along the supporting line.
-    ends: (f64, f64),
-}
-
-impl Run {
-    fn of(l: &crate::geom::Line<ViewSpace>) -> Option<Self> {
-        let mut u = l.vector().unit()?;
-        if u.x < -ONE_DIRECTION || (u.x <= ONE_DIRECTION && u.y < 0.0) {
-            u = -u;
-        }
-        let along = |p: crate::geom::Point<ViewSpace>| p.x * u.x + p.y * u.y;
-        let offset = l.from.y * u.x - l.from.x * u.y;
-        Some(Self { angle: u.y.atan2(u.x), offset, ends: (along(l.from), along(l.to)) })
-    }
-
-    fn low(&self) -> f64 {
-        self.ends.0.min(self.ends.1)
-    }
-
-    fn high(&self) -> f64 {
-        self.ends.0.max(self.ends.1)
+fn rank(class: LineClass) -> u8 {
+    match class {
+        LineClass::Visible | LineClass::Cut => 0,
+        LineClass::Hidden | LineClass::Smooth => 1,
+        LineClass::Centre => 2,
+        LineClass::Adjacent => 3,
+        LineClass::Break => 4,
+        LineClass::Construction => 5,
     }
 }
 
-/// Groups items whose keys agree within [`COINCIDENT`] (angles within [`ONE_DIRECTION`], which is
-/// smaller, so the same bound serves), by sorting once per key.
-fn clusters<T: Copy, const N: usize>(
-    items: Vec<(usize, T)>,
-    key: impl Fn(&T) -> [f64; N] + Copy,
-) -> Vec<Vec<(usize, T)>> {
-    let mut groups = vec![items];
-    for k in 0..N {
-        groups = groups.into_iter().flat_map(|g| split_by(g, |t| key(t)[k])).collect();
-    }
-    groups
+/// What happens to one edge.
+#[derive(Default)]
+struct Fate {
+    lost: Vec<Stretch>,
+    /// Stretches that a later edge of the same class shares.
+    shared: Vec<(Stretch, usize)>,
 }
 
-fn split_by<T: Copy>(mut group: Vec<(usize, T)>, key: impl Fn(&T) -> f64) -> Vec<Vec<(usize, T)>> {
-    group.sort_by(|a, b| key(&a.1).total_cmp(&key(&b.1)).then(a.0.cmp(&b.0)));
-    let mut groups: Vec<Vec<(usize, T)>> = Vec::new();
-    for item in group {
-        match groups.last_mut() {
-            Some(g) if g.last().is_some_and(|l| key(&item.1) - key(&l.1) <= COINCIDENT) => {
-                g.push(item);
-            }
-            _ => groups.push(vec![item]),
-        }
-    }
-    groups
-}
-
-fn settle_lines(cluster: &[(usize, Run)], edges: &[Edge]) -> Vec<(usize, f64, Edge)> {
-    if let [(i, _)] = cluster {
-        return vec![(*i, 0.0, edges[*i].clone())];
-    }
-    let mut cuts: Vec<f64> = cluster.iter().flat_map(|(_, r)| [r.low(), r.high()]).collect();
-    cuts.sort_by(f64::total_cmp);
-    cuts.dedup_by(|a, b| (*a - *b).abs() <= COINCIDENT);
-    // Sorted by their beginnings, so that the edges over a stretch are found by sweeping.
-    let mut order: Vec<&(usize, Run)> = cluster.iter().collect();
-    order.sort_by(|a, b| a.1.low().total_cmp(&b.1.low()).then(a.0.cmp(&b.0)));
-    let mut active: Vec<&(usize, Run)> = Vec::new();
-    let mut next = 0;
-    let mut stretches: Vec<Stretch> = Vec::new();
-    for pair in cuts.windows(2) {
-        let middle = (pair[0] + pair[1]) / 2.0;
-        while order.get(next).is_some_and(|(_, r)| r.low() <= middle) {
-            active.push(order[next]);
-            next += 1;
-        }
-        active.retain(|(_, r)| r.high() >= middle);
-        let over: Vec<usize> = active.iter().map(|(i, _)| *i).collect();
-        stretches.extend(winners(&over, edges, pair[0], pair[1]));
-    }
-    let runs: std::collections::BTreeMap<usize, Run> = cluster.iter().copied().collect();
-    joined(stretches)
-        .into_iter()
-        .map(|s| {
-            let run = runs[&s.owner];
-            let share = |t: f64| (t - run.ends.0) / (run.ends.1 - run.ends.0);
-            let (a, b) = (share(s.from), share(s.to));
-            let curve = edges[s.owner].curve.piece(a.min(b).max(0.0), a.max(b).min(1.0));
-            (s.owner, a.min(b), Edge { class: s.class, curve, shapes: s.shapes })
-        })
-        .collect()
-}
-
-fn settle_arcs(cluster: &[(usize, Arc<ViewSpace>)], edges: &[Edge]) -> Vec<(usize, f64, Edge)> {
-    if let [(i, _)] = cluster {
-        return vec![(*i, 0.0, edges[*i].clone())];
-    }
-    let slack = (COINCIDENT / cluster[0].1.radius).to_degrees();
-    let mut cuts: Vec<f64> = cluster
-        .iter()
-        .filter(|(_, a)| !a.is_full())
-        .flat_map(|(_, a)| [a.start.rem_euclid(360.0), (a.start + a.sweep).rem_euclid(360.0)])
-        .collect();
-    cuts.sort_by(f64::total_cmp);
-    cuts.dedup_by(|a, b| (*a - *b).abs() <= slack);
-    if cuts.is_empty() {
-        cuts.push(0.0);
-    }
-    let closing = cuts[0] + 360.0;
-    cuts.push(closing);
-    let mut stretches = Vec::new();
-    for pair in cuts.windows(2) {
-        let middle = (pair[0] + pair[1]) / 2.0;
-        let over: Vec<usize> =
-            cluster.iter().filter(|(_, a)| a.covers(middle)).map(|(i, _)| *i).collect();
-        stretches.extend(winners(&over, edges, pair[0], pair[1]));
-    }
-    let arc = cluster[0].1;
-    joined(stretches)
-        .into_iter()
-        .map(|s| {
-            let sweep = s.to - s.from;
-            let curve = if sweep >= 360.0 - 1e-9 {
-                Curve::circle(arc.centre, arc.radius)
-            } else {
-                Curve::Arc(Arc::new(arc.centre, arc.radius, s.from, sweep))
-            };
-            (s.owner, s.from, Edge { class: s.class, curve, shapes: s.shapes })
-        })
-        .collect()
-}
-
-/// A stretch of one supporting line or circle, to be drawn once.
-struct Stretch {
-    owner: usize,
-    class: LineClass,
+/// A stretch that stays, and which edges lend their shapes to it.
+struct Piece {
+    stretch: Stretch,
     shapes: Vec<ShapeId>,
-    from: f64,
-    to: f64,
 }
 
-/// What is drawn between two cuts, of the edges that run there: one stretch for each class that
-/// need not give way.
-fn winners(over: &[usize], edges: &[Edge], from: f64, to: f64) -> Vec<Stretch> {
-    let mut classes: Vec<LineClass> = over.iter().map(|i| edges[*i].class).collect();
-    classes.sort_unstable();
-    classes.dedup();
-    classes
-        .iter()
-        .filter(|c| !classes.iter().any(|w| gives_way(**c, *w)))
-        .filter_map(|class| {
-            let own: Vec<usize> =
-                over.iter().copied().filter(|i| edges[*i].class == *class).collect();
-            let mut shapes: Vec<ShapeId> =
-                own.iter().flat_map(|i| edges[*i].shapes.clone()).collect();
-            shapes.sort();
-            shapes.dedup();
-            own.iter().min().map(|o| Stretch { owner: *o, class: *class, shapes, from, to })
-        })
-        .collect()
-}
-
-/// Neighbouring stretches of one owner and equal shapes as one.
-fn joined(mut stretches: Vec<Stretch>) -> Vec<Stretch> {
-    stretches.sort_by(|a, b| a.owner.cmp(&b.owner).then(a.from.total_cmp(&b.from)));
-    let mut all: Vec<Stretch> = Vec::new();
-    for s in stretches {
-        match all.last_mut() {
-            Some(l)
-                if l.owner == s.owner
-                    && l.class == s.class
-                    && l.shapes == s.shapes
-                    && (l.to - s.from).abs() <= 1e-9 =>
-            {
-                l.to = s.to;
-            }
-            _ => all.push(s),
+impl Fate {
+    fn apply(&self, i: usize, edge: &Edge, edges: &[Edge], kept: &mut Vec<Edge>) {
+        if self.lost.is_empty() && self.shared.is_empty() {
+            kept.push(edge.clone());
+            return;
         }
+        let mut pieces: Vec<Piece> = Vec::new();
+        for stretch in self.stretches(edge.curve.length()) {
+            let middle = (stretch.from + stretch.to) / 2.0;
+            if self.lost.iter().any(|l| l.holds(middle)) {
+                continue;
+            }
+            let shapes = self.shapes(i, middle, edges);
+            match pieces.last_mut() {
+                Some(last) if last.stretch.to == stretch.from && last.shapes == shapes => {
+                    last.stretch.to = stretch.to;
+                }
+                _ => pieces.push(Piece { stretch, shapes }),
+            }
+        }
+        kept.extend(curves_of(&edge.curve, pieces).map(|(curve, shapes)| Edge {
+            class: edge.class,
+            curve,
+            shapes,
+        }));
     }
-    all
+
+    /// The edge cut wherever something begins or ends, without pieces that are no length.
+    fn stretches(&self, length: f64) -> Vec<Stretch> {
+        let all = self.lost.iter().chain(self.shared.iter().map(|(s, _)| s));
+        let mut cuts: Vec<f64> = all.flat_map(|s| [s.from, s.to]).chain([0.0, 1.0]).collect();
+        cuts.sort_by(f64::total_cmp);
+        let mut clean: Vec<f64> = Vec::with_capacity(cuts.len());
+        for t in cuts {
+            match clean.last() {
+                Some(last) if (t - last) * length <= COINCIDENT => {}
+                _ => clean.push(t),
+            }
+        }
+        // The end stays even where the last cut lies close before it.
+        if let Some(last) = clean.last_mut() {
+            *last = if (1.0 - *last) * length <= COINCIDENT { 1.0 } else { *last };
+        }
+        clean.windows(2).map(|w| Stretch { from: w[0], to: w[1] }).collect()
+    }
+
+    fn shapes(&self, i: usize, t: f64, edges: &[Edge]) -> Vec<ShapeId> {
+        let mut shapes = edges[i].shapes.clone();
+        for (_, j) in self.shared.iter().filter(|(s, _)| s.holds(t)) {
+            for id in &edges[*j].shapes {
+                if !shapes.contains(id) {
+                    shapes.push(id.clone());
+                }
+            }
+        }
+        shapes
+    }
+}
+
+/// The curves of the pieces; on a whole turn the last and the first may be one.
+fn curves_of(
+    curve: &Curve<View>,
+    mut pieces: Vec<Piece>,
+) -> impl Iterator<Item = (Curve<View>, Vec<ShapeId>)> + '_ {
+    let mut around = None;
+    if let [first, .., last] = pieces.as_slice()
+        && curve.is_loop()
+        && first.stretch.from == 0.0
+        && last.stretch.to == 1.0
+        && first.shapes == last.shapes
+    {
+        around =
+            Some((across_start(curve, last.stretch.from, first.stretch.to), last.shapes.clone()));
+        pieces.pop();
+        pieces.remove(0);
+    }
+    let inner = pieces.into_iter().map(|p| (curve.piece(p.stretch.from, p.stretch.to), p.shapes));
+    around.into_iter().chain(inner)
 }
 
 #[cfg(test)]
 mod tests {
     use super::*;
-    use crate::geom::{Point, overlap_length};
+    use crate::geom::{Arc, Point};
     use proptest::prelude::*;
 
-    fn edge(class: LineClass, x0: f64, x1: f64, name: &str) -> Edge {
-        Edge {
-            class,
-            curve: Curve::line(Point::new(x0, 2.0), Point::new(x1, 2.0)),
-            shapes: vec![ShapeId::new(name)],
-        }
+    fn resolved(edges: Vec<Edge>) -> Vec<Edge> {
+        super::resolved(edges).expect("no crowd")
+    }
+
+    fn edge(id: &str, class: LineClass, curve: Curve<View>) -> Edge {
+        Edge { class, curve, shapes: vec![ShapeId::new(id)] }
+    }
+
+    fn level(id: &str, class: LineClass, x0: f64, x1: f64) -> Edge {
+        edge(id, class, Curve::line(Point::new(x0, 0.0), Point::new(x1, 0.0)))
+    }
+
+    fn spans(edges: &[Edge]) -> Vec<(LineClass, i64, i64, String)> {
+        let ids = |e: &Edge| e.shapes.iter().map(ShapeId::as_str).collect::<Vec<_>>().join("+");
+        edges
+            .iter()
+            .map(|e| {
+                let (a, b) = (e.curve.start().x, e.curve.end().x);
+                (e.class, a.round() as i64, b.round() as i64, ids(e))
+            })
+            .collect()
     }
 
     #[test]
-    fn a_visible_edge_hides_what_lies_under_it_and_no_more() {
-        let out = settle(vec![
-            edge(LineClass::Hidden, 0.0, 10.0, "h"),
-            edge(LineClass::Visible, 4.0, 6.0, "v"),
+    fn a_visible_edge_removes_what_is_under_it() {
+        use LineClass::{Centre, Hidden, Visible};
+        let found = resolved(vec![
+            level("wall", Hidden, 0.0, 10.0),
+            level("rim", Visible, 4.0, 6.0),
+            level("axis", Centre, -5.0, 15.0),
         ]);
-        let hidden: Vec<_> = out.iter().filter(|e| e.class == LineClass::Hidden).collect();
-        assert_eq!(hidden.len(), 2);
-        assert!(hidden.iter().all(|e| (e.curve.length() - 4.0).abs() < 1e-9));
-        assert_eq!(out.len(), 3);
+        let expected = [
+            (Hidden, 0, 4, "wall"),
+            (Hidden, 6, 10, "wall"),
+            (Visible, 4, 6, "rim"),
+            (Centre, -5, 0, "axis"),
+            (Centre, 10, 15, "axis"),
+        ];
+        assert_eq!(spans(&found), expected.map(|(c, a, b, id)| (c, a, b, id.to_owned())));
     }
 
     #[test]
-    fn a_shared_edge_is_drawn_once_and_names_both_shapes() {
-        let out = settle(vec![
-            edge(LineClass::Visible, 0.0, 10.0, "a"),
-            edge(LineClass::Visible, 10.0, 0.0, "b"),
-        ]);
-        assert_eq!(out.len(), 1);
-        assert_eq!(out[0].shapes, vec![ShapeId::new("a"), ShapeId::new("b")]);
+    fn equals_merge_and_keep_both_names() {
+        use LineClass::Visible;
+        let found = resolved(vec![level("a", Visible, 0.0, 10.0), level("b", Visible, 15.0, 5.0)]);
+        let expected = [(Visible, 0, 5, "a"), (Visible, 5, 10, "a+b"), (Visible, 15, 10, "b")];
+        assert_eq!(spans(&found), expected.map(|(c, a, b, id)| (c, a, b, id.to_owned())));
     }
 
     #[test]
-    fn hidden_and_smooth_do_not_remove_each_other() {
-        let out = settle(vec![
-            edge(LineClass::Hidden, 0.0, 10.0, "h"),
-            edge(LineClass::Smooth, 0.0, 10.0, "s"),
-        ]);
-        assert_eq!(out.len(), 2);
+    fn the_stronger_of_two_whole_lines_keeps_both_names() {
+        use LineClass::{Hidden, Visible};
+        let found =
+            resolved(vec![level("back", Hidden, 9.0, 0.0), level("face", Visible, 0.0, 9.0)]);
+        assert_eq!(spans(&found), [(Visible, 0, 9, "face+back".to_owned())]);
     }
 
     #[test]
-    fn an_arc_on_a_circle_is_not_drawn_twice() {
-        let round = |class, start, sweep, name: &str| Edge {
-            class,
-            curve: Curve::Arc(Arc::new(Point::new(0.0, 0.0), 5.0, start, sweep)),
-            shapes: vec![ShapeId::new(name)],
-        };
-        let out = settle(vec![
-            round(LineClass::Hidden, 0.0, 360.0, "h"),
-            round(LineClass::Visible, -30.0, 60.0, "v"),
+    fn a_hidden_line_stays_under_a_smooth_one() {
+        use LineClass::{Hidden, Smooth};
+        let found = resolved(vec![level("a", Smooth, 0.0, 9.0), level("b", Hidden, 0.0, 9.0)]);
+        assert_eq!(found.len(), 2);
+    }
+
+    #[test]
+    fn a_circle_with_a_covered_part_stays_one_arc() {
+        let circle = |start, sweep| Curve::Arc(Arc::new(Point::new(2.0, 3.0), 8.0, start, sweep));
+        let found = resolved(vec![
+            edge("hole", LineClass::Hidden, circle(0.0, 360.0)),
+            edge("rim", LineClass::Visible, circle(90.0, 60.0)),
         ]);
-        let hidden: f64 =
-            out.iter().filter(|e| e.class == LineClass::Hidden).map(|e| e.curve.length()).sum();
-        assert!((hidden - 300f64.to_radians() * 5.0).abs() < 1e-6, "{out:?}");
+        assert_eq!(found.len(), 2);
+        let Curve::Arc(rest) = found[0].curve else { panic!("{found:?}") };
+        assert!((rest.sweep - 300.0).abs() < 1e-9 && (rest.start - 150.0).abs() < 1e-9);
+    }
+
+    fn any_edges() -> impl Strategy<Value = Vec<Edge>> {
+        let class = prop::sample::select(vec![
+            LineClass::Visible,
+            LineClass::Hidden,
+            LineClass::Cut,
+            LineClass::Centre,
+            LineClass::Adjacent,
+            LineClass::Construction,
+        ]);
+        let one =
+            (class, 0..4u8, 0..12i32, 1..12i32, 0..3i32).prop_map(|(class, kind, a, n, row)| {
+                let (a, n, row) = (f64::from(a), f64::from(n), f64::from(row));
+                let p = Point::<View>::new;
+                match kind {
+                    0 => (class, Curve::line(p(a, row), p(a + n, row))),
+                    1 => (class, Curve::line(p(row, a + n), p(row, a))),
+                    2 => (class, Curve::line(p(a, a + row), p(a + n, a + n + row))),
+                    _ => {
+                        (class, Curve::Arc(Arc::new(p(0.0, row), 5.0, a * 30.0, n * 30.0 - 180.5)))
+                    }
+                }
+            });
+        prop::collection::vec(one, 1..14).prop_map(|all| {
+            let numbered = all.into_iter().enumerate();
+            numbered.map(|(i, (class, curve))| edge(&format!("s{i}"), class, curve)).collect()
+        })
     }
 
     proptest! {
         #[test]
-        fn no_two_edges_of_the_result_run_on_one_another(
-            spans in prop::collection::vec((0.0..100.0f64, 0.5..40.0f64, 0..3u8), 1..30),
-        ) {
-            let class = |k: u8| match k {
-                0 => LineClass::Visible,
-                1 => LineClass::Hidden,
-                _ => LineClass::Centre,
-            };
-            let edges: Vec<Edge> = spans
-                .iter()
-                .enumerate()
-                .map(|(i, (x, w, k))| edge(class(*k), *x, x + w, &format!("s{i}")))
-                .collect();
-            let once = settle(edges);
-            for (i, a) in once.iter().enumerate() {
-                for b in &once[i + 1..] {
-                    let (Curve::Line(p), Curve::Line(q)) = (&a.curve, &b.curve) else { continue };
-                    prop_assert!(overlap_length(p, q) <= COINCIDENT + 1e-9);
+        fn no_two_edges_that_remain_overlap(edges in any_edges()) {
+            let found = resolved(edges);
+            for (i, a) in found.iter().enumerate() {
+                for b in &found[i + 1..] {
+                    let common = covered(&a.curve, &b.curve);
+                    prop_assert!(common.is_empty(), "{a:?} {b:?} {common:?}");
                 }
             }
-            let twice = settle(once.clone());
-            prop_assert_eq!(once.len(), twice.len());
+        }
+
+        #[test]
+        fn resolving_again_changes_nothing(edges in any_edges()) {
+            let once = resolved(edges);
+            prop_assert_eq!(resolved(once.clone()), once);
+        }
+
+        #[test]
+        fn every_place_keeps_its_strongest_line(edges in any_edges()) {
+            let found = resolved(edges.clone());
+            for e in &edges {
+                for t in [0.037, 0.513, 0.981] {
+                    let p = e.curve.at(t);
+                    let on = |other: &&Edge| {
+                        let l = other.curve.flattened(1e-5);
+                        l.windows(2).any(|w| {
+                            crate::geom::distance_line_line(w[0], w[1], p, p + crate::geom::Vector::new(1e-9, 0.0)) < 1e-4
+                        })
+                    };
+                    let strongest = edges.iter().filter(on).map(|o| rank(o.class)).min();
+                    let left = found.iter().filter(on).map(|o| rank(o.class)).min();
+                    prop_assert_eq!(strongest, left);
+                }
+            }
         }
     }
 }
