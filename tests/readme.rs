@@ -1,39 +1,54 @@
-//! What the README shows must work: its example is read, drawn and checked.
+//! What the README shows must work: its examples are read, drawn and checked.
 
-use witnessline::review::Severity;
+use witnessline::review::{Review, Severity};
 use witnessline::source::{Diagnostics, SourceMap};
 
-fn example() -> String {
+/// The TOML blocks of the README that stand below this comment.
+fn blocks(comment: &str) -> Vec<String> {
     let readme = std::fs::read_to_string("README.md").expect("the README is readable");
-    let (_, after) = readme.split_once("<!-- example -->").expect("it has an example");
-    let (_, block) = after.split_once("```toml\n").expect("in a block");
-    block.split("```").next().unwrap_or_default().to_owned()
+    let after = readme.split(comment).skip(1);
+    let block = |text: &str| {
+        let (_, block) = text.split_once("```toml\n").expect("the comment stands above a block");
+        block.split("```").next().unwrap_or_default().to_owned()
+    };
+    after.map(block).collect()
 }
 
-#[test]
-fn the_example_of_the_readme_issues_cleanly() {
+/// Draws and checks a spec that nothing may be said against.
+fn review(name: &str, text: &str) -> Review {
     let (mut sources, mut diagnostics) = (SourceMap::default(), Diagnostics::default());
-    let drawing =
-        witnessline::spec::read_text("README.md", &example(), &mut sources, &mut diagnostics);
+    let drawing = witnessline::spec::read_text(name, text, &mut sources, &mut diagnostics);
     let drawn = drawing.and_then(|d| witnessline::draw(d, &mut diagnostics));
     let said = witnessline::source::render::render(&diagnostics.into_sorted(), &sources, false);
     assert_eq!(said, "");
-    let review = witnessline::check(&drawn.expect("nothing was said against it"));
-    let grave: Vec<_> = review
-        .findings
-        .iter()
-        .filter(|f| f.severity >= Severity::Should)
-        .map(|f| f.message.clone())
-        .collect();
-    assert_eq!(grave, Vec::<String>::new());
+    witnessline::check(&drawn.expect("nothing was said against it"))
+}
+
+#[test]
+fn the_examples_of_the_readme_issue_cleanly() {
+    let examples = blocks("<!-- example -->");
+    assert_eq!(examples.len(), 2);
+    for example in examples {
+        let findings = review("README.md", &example).findings;
+        let said: Vec<_> = findings.iter().map(|f| &f.message).collect();
+        assert!(said.is_empty(), "{said:?}\n{example}");
+    }
+}
+
+#[test]
+fn what_the_readme_adds_is_of_the_language() {
+    let examples = blocks("<!-- example -->");
+    for addition in blocks("<!-- addition -->") {
+        let findings = review("README.md", &format!("{}\n{addition}", examples[0])).findings;
+        // Nothing stands in the way on that sheet, so there is nothing to accept.
+        let rules: Vec<_> = findings.iter().map(|f| f.rule.name).collect();
+        assert_eq!(rules, ["content/allow-unused"]);
+    }
 }
 
 #[test]
 fn the_starter_issues_cleanly() {
     let text = witnessline::spec::starter("ST-1");
-    let (mut sources, mut diagnostics) = (SourceMap::default(), Diagnostics::default());
-    let drawing = witnessline::spec::read_text("new.toml", &text, &mut sources, &mut diagnostics);
-    let drawn = drawing.and_then(|d| witnessline::draw(d, &mut diagnostics)).expect("it is sound");
-    let review = witnessline::check(&drawn);
+    let review = review("new.toml", &text);
     assert!(review.worst().is_none_or(|w| w < Severity::Should), "{:?}", review.findings);
 }
