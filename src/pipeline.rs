@@ -7,6 +7,7 @@ use crate::scene::Scene;
 use crate::source::{Diagnostic, Diagnostics};
 use crate::spec::{Drawing, FormatChoice};
 use crate::style::{self, Style};
+use crate::units::LengthUnit;
 use crate::view::{SizeConflict, View, contradictions, drawn_view};
 
 /// A drawing with its sheets.
@@ -28,6 +29,12 @@ pub struct Drawn {
 /// that forbids making a sheet.
 #[must_use]
 pub fn draw(drawing: Drawing, diagnostics: &mut Diagnostics) -> Option<Drawn> {
+    if drawing.sheet.units == LengthUnit::Inch {
+        // Values are written in millimetres still: an inch drawing would lie.
+        let problem = Diagnostic::error(drawing.sheet.span, "this version writes no inch drawings")
+            .help("leave units out and write single sizes in inches, such as \"2.5 in\"");
+        diagnostics.push(problem);
+    }
     let style = style_of(&drawing, diagnostics);
     let views: Vec<View> =
         drawing.views.iter().filter_map(|v| drawn_view(v, diagnostics)).collect();

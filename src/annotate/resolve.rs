@@ -14,7 +14,7 @@ use crate::scene::{ItemKind, Value, ValueUnit};
 use crate::source::{Diagnostic, Diagnostics, Span};
 use crate::spec::{
     AnchorRef, AnnotationSpec, Drawing, Form, HoleNote, LineDirection, Measure, Pin, RimSize, Says,
-    Side, Text,
+    Show, Side, Text, Tolerance,
 };
 use crate::view::{Anchor, AnchorError, Measured, Size, View};
 
@@ -40,6 +40,9 @@ pub fn resolve(
         })
         .collect()
 }
+
+/// A size may miss its limits by this much, mm: what f64 leaves of a decimal.
+const LIMIT_SLACK: f64 = 1e-9;
 
 type Bound<T> = Result<T, Box<Diagnostic>>;
 
@@ -163,6 +166,7 @@ impl Binder<'_> {
         let span = Span { end: b.span.end.max(a.span.end), ..a.span };
         let size = measure::linear(measure::hold(&from), measure::hold(&to), direction)
             .map_err(|e| measure_problem(&e, span))?;
+        check_form(size.length(), form, span)?;
         let sign = form.sign.map_or("", |s| s.text());
         let (label, value, _) = self.write(size.length(), ValueUnit::Millimetre, 1, sign, form);
         let size = LinearSize { label: Arc::new(label), ..size };
@@ -179,12 +183,14 @@ impl Binder<'_> {
         };
         match *first {
             Size::Diameter(circle) => {
+                check_form(circle.radius * 2.0, form, anchor.span)?;
                 let circles = rounds(&found);
                 let (label, value, text) = self.write(circle.radius * 2.0, mm, count, "⌀", form);
                 let content = Content::Diameter { circles, label: Arc::new(label) };
                 Ok(said(content, Some(value), text, shapes))
             }
             Size::Radius(arc) => {
+                check_form(arc.radius, form, anchor.span)?;
                 let (label, value, text) = self.write(arc.radius, mm, count, "R", form);
                 let content = Content::Radius { arcs: rounds(&found), label: Arc::new(label) };
                 Ok(said(content, Some(value), text, shapes))
@@ -192,6 +198,7 @@ impl Binder<'_> {
             Size::Distance { from, to, direction, sign } => {
                 let size = measure::linear(measure::hold(&from), measure::hold(&to), direction)
                     .map_err(|e| measure_problem(&e, anchor.span))?;
+                check_form(size.length(), form, anchor.span)?;
                 let sign = form.sign.or(sign).map_or("", |s| s.text());
                 let (label, value, text) = self.write(size.length(), mm, count, sign, form);
                 let size = LinearSize { label: Arc::new(label), ..size };
@@ -210,6 +217,7 @@ impl Binder<'_> {
         };
         let [u, v] = legs.map(|l| l.vector());
         let degrees = u.cross(v).atan2(u.dot(v)).to_degrees().abs();
+        check_form(degrees, form, a.span)?;
         let (label, value, text) = self.write(degrees, ValueUnit::Degree, 1, "", form);
         let content = Content::Angular { vertex, legs, label: Arc::new(label) };
         Ok(said(content, Some(value), text, joined([shape_a, shape_b])))
@@ -423,6 +431,24 @@ fn check_pin(content: &Content, pin: &Pin) -> Bound<()> {
     let message = format!("{kind} dimension does not stand on that side");
     let help = format!("say side = {sides}, or leave the side open");
     Err(Box::new(Diagnostic::error(pin.span, message).help(help)))
+}
+
+/// A form must agree with what is measured: limits hold the size, and what is to be shown is given.
+fn check_form(value: f64, form: &Form, span: Span) -> Bound<()> {
+    if let Tolerance::Limits { upper, lower } = form.tolerance
+        && !(lower - LIMIT_SLACK..=upper + LIMIT_SLACK).contains(&value)
+    {
+        let message = format!("the size measures {value}, outside its limits {lower} and {upper}");
+        let help = "draw the size within its limits, or correct the limits";
+        return Err(Box::new(Diagnostic::error(span, message).help(help)));
+    }
+    let shown = matches!(form.show, Show::Limits | Show::Deviations);
+    if shown && form.tolerance == Tolerance::None {
+        let message = "limits or deviations are to be shown, but none are given";
+        let help = "give a tolerance, such as { upper = 0.021, lower = 0 }";
+        return Err(Box::new(Diagnostic::error(span, message).help(help)));
+    }
+    Ok(())
 }
 
 fn said(content: Content, value: Option<Value>, text: String, shapes: Vec<ShapeId>) -> Said {

@@ -5,7 +5,7 @@ use crate::style;
 
 /// Options of `style`.
 #[derive(Debug, clap::Args)]
-#[command(after_help = "Example: witnessline style iso > styles/ours.toml")]
+#[command(after_help = "Example: witnessline style iso")]
 pub(super) struct Options {
     /// Name of the style; without it the styles are listed.
     name: Option<String>,
