@@ -50,7 +50,9 @@ fn sheets() -> Vec<Issued> {
 
 /// Past the test harness, which keeps the output of passing tests to itself.
 fn report(check: &str, outcome: &str) {
-    let _ = writeln!(io::stderr(), "outside check: {check}: {outcome}");
+    // One write, so that lines of tests running beside this one do not cut it in two.
+    let line = format!("\noutside check: {check}: {outcome}\n");
+    let _ = io::stderr().write_all(line.as_bytes());
 }
 
 fn p(x: f64, y: f64) -> Point<Sheet> {
